@@ -1,0 +1,59 @@
+# Each command makes ready what it needs by itself; see .ci/environment.
+.DEFAULT_GOAL := help
+.PHONY: help demo test bench lint format lock upgrade wheel wheelhouse clean
+
+PYTHON := .venv/bin/python
+
+help:
+	@echo "make demo        see it run: a made-up tankhouse on 127.0.0.1"
+	@echo "make test        see it pass its tests: both databases, published values, a real browser"
+	@echo "make bench       how fast it is, as ratios on this machine"
+	@echo "make lint        formatter, linter and type checker"
+	@echo "make format      let the formatter decide"
+	@echo "make lock        the lock files anew, after pyproject.toml changed"
+	@echo "make upgrade     the lock files with everything at its newest"
+	@echo "make wheel       the package, into dist/"
+	@echo "make wheelhouse  the package and all it needs for a site without internet, into dist/wheelhouse/"
+
+demo:
+	@.ci/environment runtime
+	@.venv/bin/ampledger demo
+
+test:
+	@.ci/environment dev
+	@.ci/environment chromium
+	@$(PYTHON) -m pytest -n logical --dist worksteal
+
+bench:
+	@.ci/environment dev
+	@$(PYTHON) -m tests.bench
+
+lint:
+	@.ci/environment dev
+	@$(PYTHON) -m ruff format --check .
+	@$(PYTHON) -m ruff check .
+	@$(PYTHON) -m mypy
+
+format:
+	@.ci/environment dev
+	@$(PYTHON) -m ruff format .
+	@$(PYTHON) -m ruff check --fix .
+
+lock:
+	@.ci/environment lock
+
+upgrade:
+	@.ci/environment lock --upgrade
+
+wheel:
+	@.ci/environment runtime
+	@$(PYTHON) -m pip wheel --quiet --no-deps --no-build-isolation --wheel-dir dist .
+	@ls -1 dist/*.whl
+
+wheelhouse: wheel
+	@$(PYTHON) -m pip download --quiet --require-hashes -r requirements.lock --dest dist/wheelhouse
+	@cp dist/ampledger-*.whl dist/wheelhouse/
+	@du -sh dist/wheelhouse
+
+clean:
+	@rm -rf .venv dist build .pytest_cache .mypy_cache .ruff_cache .hypothesis .coverage htmlcov

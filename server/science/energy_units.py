@@ -156,8 +156,8 @@ def kg_kah_from_kg_c(kg_c: Value) -> Value:
 
     Example
     -------
-    >>> kg_kah_from_kg_c(2e-6)
-    7.2
+    >>> kg_kah_from_kg_c(1e-3)
+    3600.0
     """
     return kg_c * COULOMBS_PER_KAH
 

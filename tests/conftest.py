@@ -1,0 +1,6 @@
+"""Fixtures for every test; each lies with its like in tests/fixtures/."""
+
+pytest_plugins = [
+    "tests.fixtures.guards",
+    "tests.fixtures.databases",
+]

@@ -3,4 +3,5 @@
 pytest_plugins = [
     "tests.fixtures.guards",
     "tests.fixtures.databases",
+    "tests.fixtures.browser",
 ]

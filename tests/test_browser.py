@@ -1,0 +1,33 @@
+"""The browser of the tests sees what a person's browser would, and says what is wrong."""
+
+import pytest
+
+from tests.fixtures.browser import accessibility_faults
+
+pytestmark = pytest.mark.browser
+
+PLAIN = (
+    "<!doctype html><html lang='en'>"
+    "<head><title>Round</title><link rel='icon' href='data:,'></head>"
+    "<body><main><h1>Round</h1>%s</main></body></html>"
+)
+
+
+def test_a_faultless_page_has_no_accessibility_fault(page):
+    page.set_content(PLAIN % "<p>All cells read.</p>")
+
+    assert accessibility_faults(page) == []
+
+
+def test_a_picture_without_words_is_an_accessibility_fault(page):
+    page.set_content(PLAIN % "<img src='data:image/gif;base64,R0lGODlhAQABAAAAACw='>")
+
+    assert any(fault.startswith("image-alt") for fault in accessibility_faults(page))
+
+
+def test_a_phone_is_as_wide_as_a_phone(phone):
+    phone.set_content(
+        PLAIN.replace("<head>", "<head><meta name='viewport' content='width=device-width'>") % ""
+    )
+
+    assert phone.evaluate("innerWidth") == 390

@@ -207,7 +207,7 @@ def test_what_is_third_party_says_version_and_licence():
             for path in folder.rglob("*")
             if path.is_file()
             and path.name != "README.md"
-            and path.name not in about
+            and path.name.removesuffix(".gz") not in about
             and path.parent.name not in about
         ]
 

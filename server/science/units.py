@@ -23,23 +23,26 @@ from server.science.energy_units import (
     kwh_t_from_j_kg,
     price_per_j_from_price_per_kwh,
 )
-from server.science.solution_units import (
+from server.science.size_units import (
     SECONDS_PER_HOUR,
+    hours_from_seconds,
+    kg_from_tonnes,
+    metres_from_millimetres,
+    millimetres_from_metres,
+    seconds_from_hours,
+    tonnes_from_kg,
+)
+from server.science.solution_units import (
     degc_from_kelvin,
     g_l_from_mg_l,
     g_l_from_mol_m3,
-    hours_from_seconds,
     kelvin_from_degc,
-    kg_from_tonnes,
     m3_h_from_m3_s,
     m3_s_from_m3_h,
     mg_l_from_g_l,
-    millimetres_from_metres,
     mol_m3_from_g_l,
     percent_from_share,
-    seconds_from_hours,
     share_from_percent,
-    tonnes_from_kg,
 )
 
 __all__ = [
@@ -64,6 +67,7 @@ __all__ = [
     "kwh_t_from_j_kg",
     "m3_h_from_m3_s",
     "m3_s_from_m3_h",
+    "metres_from_millimetres",
     "mg_l_from_g_l",
     "microohm_from_ohm",
     "microvolts_from_volts",

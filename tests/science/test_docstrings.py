@@ -1,0 +1,171 @@
+"""Every public science function says what the house asks for, and its example runs."""
+
+import ast
+import doctest
+import importlib
+import inspect
+import pkgutil
+import re
+from types import FunctionType, ModuleType
+
+import pytest
+
+import server.science
+
+SECTIONS = ["Parameters", "Returns", "Raises", "Source", "Example"]
+FLAGS = doctest.NORMALIZE_WHITESPACE | doctest.ELLIPSIS
+MODULES = [
+    importlib.import_module(f"server.science.{found.name}")
+    for found in pkgutil.iter_modules(server.science.__path__)
+]
+
+
+def public_functions(module: ModuleType) -> list[FunctionType]:
+    """Functions made in the module itself, those of its classes left out."""
+    return [
+        member
+        for name, member in vars(module).items()
+        if inspect.isfunction(member)
+        and not name.startswith("_")
+        and member.__module__ == module.__name__
+    ]
+
+
+FUNCTIONS = [
+    pytest.param(function, id=f"{module.__name__.rpartition('.')[2]}.{function.__name__}")
+    for module in MODULES
+    for function in public_functions(module)
+]
+
+
+def sections_of(function: FunctionType) -> dict[str, str]:
+    """The docstring cut at its underlined headings, in their order; the opening is ''."""
+    parts = re.split(r"^(\w+)\n-{3,}\n", inspect.getdoc(function) or "", flags=re.MULTILINE)
+    return {"": parts[0], **dict(zip(parts[1::2], parts[2::2], strict=True))}
+
+
+def names_in(parameters: str) -> list[str]:
+    """Names listed in a Parameters section, stars kept."""
+    listed = re.findall(r"^(\*{0,2}\w+(?:, \*{0,2}\w+)*) : ", parameters, flags=re.MULTILINE)
+    return [name for names in listed for name in names.split(", ")]
+
+
+def names_taken(function: FunctionType) -> list[str]:
+    """Names of the signature, with the stars of variable arguments."""
+    stars = {inspect.Parameter.VAR_POSITIONAL: "*", inspect.Parameter.VAR_KEYWORD: "**"}
+    parameters = inspect.signature(function).parameters.values()
+    return [stars.get(parameter.kind, "") + parameter.name for parameter in parameters]
+
+
+def raised_by(function: FunctionType) -> set[str]:
+    """Names of the errors that the function itself raises."""
+    tree = ast.parse(inspect.getsource(function))
+    raised = (node.exc for node in ast.walk(tree) if isinstance(node, ast.Raise))
+    return {
+        error.func.id
+        for error in raised
+        if isinstance(error, ast.Call) and isinstance(error.func, ast.Name)
+    }
+
+
+def test_the_folder_is_seen():
+    seen = {module.__name__.rpartition(".")[2] for module in MODULES}
+
+    assert {"faraday", "charge", "energy", "uncertainty", "potential"} <= seen
+    assert len(FUNCTIONS) > 50
+
+
+@pytest.mark.parametrize("module", MODULES, ids=lambda module: module.__name__)
+def test_a_module_says_in_one_sentence_what_it_holds(module):
+    sentence = (module.__doc__ or "").strip().splitlines()
+
+    assert len(sentence) == 1
+    assert sentence[0].endswith(".")
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_a_function_begins_with_one_sentence(function):
+    first, *rest = sections_of(function)[""].splitlines()
+
+    assert first[0].isupper()
+    assert first.endswith(".")
+    assert not rest or rest[0] == ""
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_sections_stand_in_the_order_of_the_house(function):
+    found = [name for name in sections_of(function) if name]
+
+    takes = bool(inspect.signature(function).parameters)
+    required = [name for name in SECTIONS if name != "Raises" and (takes or name != "Parameters")]
+    assert found == [name for name in SECTIONS if name in found]
+    assert set(required) <= set(found)
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_parameters_are_those_of_the_signature(function):
+    assert names_in(sections_of(function).get("Parameters", "")) == names_taken(function)
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_no_section_is_empty(function):
+    sections = sections_of(function)
+
+    assert [name for name, text in sections.items() if not text.strip()] == []
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_every_error_raised_is_announced(function):
+    announced = set(re.findall(r"^(\w+)$", sections_of(function).get("Raises", ""), re.MULTILINE))
+
+    assert raised_by(function) <= announced
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_the_example_runs(function):
+    module = importlib.import_module(function.__module__)
+    runner = doctest.DocTestRunner(verbose=False, optionflags=FLAGS)
+    finder = doctest.DocTestFinder(recurse=False)
+
+    found = finder.find(function, function.__name__, module=module, globs=dict(vars(module)))
+    examples = [test for test in found if test.examples]
+    for test in examples:
+        runner.run(test, out=lambda text: None)
+
+    assert examples
+    assert runner.summarize(verbose=False).failed == 0
+
+
+@pytest.mark.parametrize("module", MODULES, ids=lambda module: module.__name__)
+def test_classes_and_their_methods_are_explained(module):
+    classes = [
+        member
+        for member in vars(module).values()
+        if inspect.isclass(member) and member.__module__ == module.__name__
+    ]
+
+    silent = [
+        f"{kind.__name__}.{name}"
+        for kind in classes
+        for name, member in {"": kind, **vars(kind)}.items()
+        if not name.startswith("_")
+        and (inspect.isfunction(member) or inspect.isclass(member) or isinstance(member, property))
+        and not (member.__doc__ or "").strip()
+    ]
+    assert silent == []
+
+
+@pytest.mark.parametrize("name", ["constants", "processes", "potential", "spread", "averages"])
+def test_a_constant_has_its_source_on_the_line_above(name):
+    module = importlib.import_module(f"server.science.{name}")
+    lines = inspect.getsource(module).splitlines()
+
+    bare = [
+        lines[node.lineno - 1]
+        for node in ast.parse(inspect.getsource(module)).body
+        if isinstance(node, ast.Assign | ast.AnnAssign)
+        and re.match(r"[A-Z_]+\b(?!.*Literal)", lines[node.lineno - 1])
+        and not lines[node.lineno - 2].startswith("#")
+    ]
+
+    assert bare == []

@@ -4,4 +4,5 @@ pytest_plugins = [
     "tests.fixtures.guards",
     "tests.fixtures.databases",
     "tests.fixtures.browser",
+    "tests.fixtures.served",
 ]

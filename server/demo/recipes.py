@@ -138,7 +138,7 @@ ZINC_WON = SectionRecipe(
     target_efficiency=0.90,
     target_kwh_t=3000.0,
     target_volts=(3.18, 3.50),
-    current=CurrentHabits(load=0.98, tariff_cut_share=0.12),
+    current=CurrentHabits(load=0.98, tariff_cut_share=0.08),
     voltage=VoltageHabits(
         cell_volts=3.35,
         resistive_share=0.25,
@@ -187,7 +187,7 @@ DEMO_RECIPES = (
                 PlannedShort(oldest=9, hours_before_end=17.0, growth_h=0.0, share=0.07),
             ),
             contacts=(
-                PlannedContact(cell=23, days_before_end=62.0, micro_ohm_per_day=0.044),
+                PlannedContact(cell=23, days_before_end=62.0, micro_ohm_per_day=0.056),
                 PlannedContact(
                     cell=41,
                     days_before_end=104.0,
@@ -215,7 +215,7 @@ DEMO_RECIPES = (
         ),
         pen=PenHabits(round_minutes=45, meter_noise_v=0.003, decimals=2, slips_per_month=1.0),
         planned=Planned(
-            shorts=(PlannedShort(oldest=2, hours_before_end=40.0, growth_h=18.0, share=0.22),),
+            shorts=(PlannedShort(oldest=2, hours_before_end=40.0, growth_h=18.0, share=0.28),),
             bypasses=(PlannedBypass(cell=38, days_before_end=33.0, hours=52.0),),
             outages=(PlannedOutage(71.2, 7.0),),
             cuts=(PlannedCut(days_before_end=21.0, days=8.0, share=0.18),),
@@ -238,8 +238,8 @@ DEMO_RECIPES = (
     replace(
         ZINC_WON,
         planned=Planned(
-            shorts=(PlannedShort(oldest=3, hours_before_end=18.0, growth_h=5.0, share=0.16),),
-            contacts=(PlannedContact(cell=31, days_before_end=40.0, micro_ohm_per_day=0.050),),
+            shorts=(PlannedShort(oldest=3, hours_before_end=18.0, growth_h=5.0, share=0.20),),
+            contacts=(PlannedContact(cell=31, days_before_end=40.0, micro_ohm_per_day=0.085),),
             bypasses=(PlannedBypass(cell=6, days_before_end=18.0, hours=24.0),),
             outages=(PlannedOutage(92.4, 6.0), PlannedOutage(19.7, 8.0)),
         ),

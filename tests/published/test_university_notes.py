@@ -1,0 +1,31 @@
+"""University course notes on copper electrowinning, scheme of 2024 (a public repository).
+
+Looked up: cell potential -0.89 V, |dG| 171.7 kJ/mol. The notes print 63.07 for |ln K| at 328 K;
+n F E / (R T) gives 62.98, so the print is a slip. Computed with F and R rounded to four or five
+figures it is 62.979, with the exact ones 62.976.
+"""
+
+import pytest
+
+from server.science.constants import FARADAY_C_MOL, GAS_CONSTANT_J_MOL_K
+from server.science.potential import nernst_slope_v, reversible_volts
+from server.science.processes import PROCESSES
+
+COPPER_ELECTROWINNING = PROCESSES["copper electrowinning"]
+
+
+def test_the_standard_cell_voltage():
+    assert reversible_volts(COPPER_ELECTROWINNING) == pytest.approx(0.89, abs=0.005)
+
+
+def test_the_gibbs_energy_of_the_notes():
+    # The notes work with 0.89 V; 2 F E in kJ/mol, to the digits printed.
+    assert 2 * FARADAY_C_MOL * 0.89 / 1000 == pytest.approx(171.7, abs=0.05)
+
+
+def test_the_equilibrium_constant_without_the_slip():
+    ln_k = 2 * FARADAY_C_MOL * 0.89 / (GAS_CONSTANT_J_MOL_K * 328)
+
+    assert ln_k == pytest.approx(62.979, abs=0.01)
+    # The same through the slope: E over the slope, in decades.
+    assert 0.89 / float(nernst_slope_v(328.0, 2)) * 2.302585093 == pytest.approx(ln_k, rel=1e-9)

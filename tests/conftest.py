@@ -5,4 +5,5 @@ pytest_plugins = [
     "tests.fixtures.databases",
     "tests.fixtures.browser",
     "tests.fixtures.served",
+    "tests.fixtures.program",
 ]

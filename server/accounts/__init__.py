@@ -1,0 +1,1 @@
+"""The plant's books: storage read, science applied, plain results returned."""

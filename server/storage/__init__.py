@@ -1,0 +1,1 @@
+"""Tables, and the way to them; no arithmetic."""

@@ -1,0 +1,7 @@
+"""Every table in one place, for migrations and tests to compare with."""
+
+from server.storage import deliveries, derived, flags, people, plant, readings, records
+from server.storage.base import Base
+
+METADATA = Base.metadata
+MODULES = (deliveries, derived, flags, people, plant, readings, records)

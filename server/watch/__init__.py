@@ -1,0 +1,1 @@
+"""What a healthy cell would read, and who does not."""

@@ -1,0 +1,1 @@
+"""Results turned into Plotly figures, as plain dictionaries."""

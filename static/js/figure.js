@@ -123,7 +123,7 @@ async function start(drawing) {
     drawing.hidden = true;
     drawing.parentElement.querySelector(".failed").hidden = false;
     drawing.parentElement.querySelector("details")?.setAttribute("open", "");
-    console.error(error);
+    console.warn(error);
   }
 }
 

@@ -1,9 +1,5 @@
 // Shows how far an upload has come. The form is an ordinary one and works without script.
-//
-//   <form method="post" enctype="multipart/form-data" data-upload>
-//     ... <div data-progress hidden><progress max="1"></progress><p role="status"
-//          data-sending="Sending: {share}" data-reading="Sent. Reading the rows ..."
-//          data-broken="The connection broke; nothing was taken in."></p></div>
+// templates/parts/upload.html holds the bar and its words.
 
 function send(form, button) {
   const progress = form.querySelector("[data-progress]");

@@ -1,0 +1,1 @@
+"""The pages and the API: requests in, HTML and JSON out."""

@@ -21,6 +21,12 @@ A cell's next crop differs from its last ones by a few per cent; over the cells 
 of that averages out (common practice; wide).
 """
 
+STOCK_SHAPE = 0.005
+"""Relative standard uncertainty of metal that hung then and has been weighed since.
+
+Its crop is shared out by charge, but shorts take more late in its growth (common practice).
+"""
+
 
 @dataclass(frozen=True)
 class Doubts:

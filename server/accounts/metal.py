@@ -8,11 +8,18 @@ from sqlalchemy.orm import Session
 
 from server.accounts.charge import PeriodCharge, charges_at
 from server.accounts.crops import LOOK_BACK, hanging
-from server.accounts.doubt import ESTIMATED_CURRENT, STOCK_MODEL, doubts_of, root_sum
+from server.accounts.doubt import (
+    ESTIMATED_CURRENT,
+    STOCK_MODEL,
+    STOCK_SHAPE,
+    doubts_of,
+    root_sum,
+)
 from server.accounts.periods import DAY_MS
 from server.accounts.results import Crops, Made
 from server.science.constants import Metal
 from server.science.faraday import deposited_kg
+from server.science.spread import median
 from server.storage.current import bypasses_of
 from server.storage.lots import crops_growing, crops_pulled, last_crops_of_cell, lot_sums
 from server.storage.plant import FROM_THE_START_MS, SectionPlan
@@ -22,7 +29,7 @@ Numbers = NDArray[np.float64]
 _RECENT_MS = 45 * DAY_MS
 """How far back a cell's crops say something about its efficiency now."""
 
-_RECENT_CROPS = 3
+_RECENT_CROPS = 5
 
 
 @dataclass(frozen=True)
@@ -72,8 +79,8 @@ def stock_at(session: Session, section: SectionPlan, metal: Metal, at_ms: int) -
 
     Cathodes whose lot has been weighed since carry the part of its metal that their charge up
     to the moment is of their whole charge. The others carry the charge since they were hung,
-    times the efficiency that the cell's recent crops showed (its last three within 45 days; else
-    the section's over that time; else the section's target).
+    times the efficiency that the cell's recent crops showed (the median of its last five within
+    45 days; else the section's over that time; else the section's target).
     """
     terms = section.terms_at(at_ms)
     cells = len(section.cell_ids)
@@ -110,20 +117,20 @@ def stock_at(session: Session, section: SectionPlan, metal: Metal, at_ms: int) -
             whole_c = float(crop["charge_c"])
             if whole_c > 0:
                 kg_per_c = float(crop["metal_kg"]) / whole_c * float(crop["share"])
-                open_parts.append((place, start, kg_per_c, 0.0))
+                open_parts.append((place, start, kg_per_c, STOCK_SHAPE))
                 moments.add(start)
         for start, count in groups.items():
             if count > 0:
                 share = count / terms.cathodes_per_cell
                 kg_per_c = float(deposited_kg(1.0, metal)) * share * efficiency[place]
-                open_parts.append((place, start, kg_per_c, 1.0))
+                open_parts.append((place, start, kg_per_c, STOCK_MODEL))
                 moments.add(start)
-    guessed_kg = _fill(session, section, at_ms, open_parts, sorted(moments), kg)
+    u_kg = _fill(session, section, at_ms, open_parts, sorted(moments), kg)
     return Stock(
         kg=kg,
         started_ms=started,
         efficiency=efficiency,
-        u_kg=STOCK_MODEL * guessed_kg,
+        u_kg=u_kg,
     )
 
 
@@ -135,30 +142,38 @@ def _fill(
     moments: list[int],
     kg: Numbers,
 ) -> float:
-    """Add each part's charge times its metal per coulomb; answers what rests on judgement, kg."""
+    """Add each part's charge times its metal per coulomb; answers how sure the sum is, kg.
+
+    What is judged alike errs alike: the parts' uncertainties are added up.
+    """
     charge_at = dict(zip(moments, charges_at(session, section.id, moments), strict=True))
     place_of = {cell_id: place for place, cell_id in enumerate(section.cell_ids)}
     bypasses: dict[int, list[tuple[int, int]]] = {}
     for cell_id, start, end in bypasses_of(session, section.cell_ids, moments[0], at_ms):
         bypasses.setdefault(place_of[cell_id], []).append((start, end))
-    guessed_kg = 0.0
-    for place, start, kg_per_c, judged in parts:
+    u_kg = 0.0
+    for place, start, kg_per_c, relative_u in parts:
         charge_c = charge_at[at_ms][0] - charge_at[start][0]
         for out_ms, back_ms in bypasses.get(place, ()):
             if back_ms > start and out_ms < at_ms:
                 edges = charges_at(session, section.id, (max(out_ms, start), min(back_ms, at_ms)))
                 charge_c -= edges[1][0] - edges[0][0]
         kg[place] += charge_c * kg_per_c
-        guessed_kg += charge_c * kg_per_c * judged
-    return guessed_kg
+        u_kg += charge_c * kg_per_c * relative_u
+    return u_kg
 
 
 def _efficiency(crops: NDArray[np.void], metal: Metal) -> float:
-    """Metal of crops over what their charge could have made; NaN without charge."""
-    charge_c = float(crops["charge_c"].sum())
-    if charge_c <= 0:
+    """Median of the crops' metal over what their charge could have made; NaN without charge.
+
+    The median, since a short takes metal from few crops and mostly late in their growth: the
+    mean of finished crops would judge young deposits too low.
+    """
+    has_charge = crops["charge_c"] > 0
+    if not has_charge.any():
         return float("nan")
-    return float(crops["metal_kg"].sum()) / float(deposited_kg(charge_c, metal))
+    theoretical_kg = deposited_kg(crops["charge_c"][has_charge], metal)
+    return float(median(crops["metal_kg"][has_charge] / theoretical_kg))
 
 
 def made_account(

@@ -1,11 +1,12 @@
 """Brings everything derived up to date, stretch by stretch, and resumes where it stopped."""
 
 from collections.abc import Callable
+from dataclasses import dataclass
 
 import numpy as np
 from sqlalchemy.orm import Session
 
-from server.accounts.charge import charge_record, rebuild_charge
+from server.accounts.charge import ChargeRecord, charge_record, rebuild_charge
 from server.accounts.crops import recharge_crops, replay_lots
 from server.accounts.energy_days import REACH_MS, energy_of_day, readings_under_load
 from server.accounts.periods import DAY_MS, utc_day_ms
@@ -19,6 +20,11 @@ from server.storage.readings import Series, between, cells_recorded, span_ms
 from server.storage.stale import Kind, StaleStretch, mark, pending, settle
 from server.storage.summaries import keep_energy_days
 from server.watch.limits import Watched, replay
+
+_FAR_MS = 2**60
+
+_AROUND_MS = 2 * REACH_MS + DAY_MS
+"""A changed reading bends days as far as it reaches, and these need what reaches into them."""
 
 BLOCK_MS = 92 * DAY_MS
 """The longest stretch that is worked out in one transaction."""
@@ -52,8 +58,26 @@ def bring_up_to_date(session: Session, house: House, block: StaleStretch, max_ho
     work[block.kind]()
     if block.kind == "lots":
         # A replay runs to the newest lot.
-        settle(session, section.id, "lots", block.from_ms, 2**60)
+        settle(session, section.id, "lots", block.from_ms, _FAR_MS)
     settle(session, section.id, block.kind, block.from_ms, block.to_ms)
+
+
+@dataclass(frozen=True)
+class _AtHand:
+    """A section's readings and current around a stretch of time."""
+
+    series: Series
+    loaded: Watched
+    record: ChargeRecord
+    bypasses: list[tuple[int, int, int]]
+
+
+def _at_hand(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> _AtHand:
+    """What is needed to work out the energy and the watch of a time between these moments."""
+    series = between(session, section.cell_ids, from_ms, to_ms)
+    record = charge_record(session, section.id, from_ms, to_ms)
+    bypasses = bypasses_of(session, section.cell_ids, from_ms, to_ms)
+    return _AtHand(series, readings_under_load(section, series, record, bypasses), record, bypasses)
 
 
 def _after_charge(
@@ -61,12 +85,10 @@ def _after_charge(
 ) -> None:
     """The current, or what lets it pass, changed."""
     days = rebuild_charge(session, section.id, block.from_ms, block.to_ms, max_hold_ms)
-    if days is None:
-        return
-    series = between(session, section.cell_ids, days[0] - REACH_MS, days[1] + REACH_MS)
-    _energy(session, section, *days, series)
+    hand = _at_hand(session, section, days[0] - _AROUND_MS, days[1] + _AROUND_MS)
+    _energy(session, section, *_bent_days(session, section, *days, hand), hand)
     recharge_crops(session, section, *days)
-    _watch(session, section, *days, series)
+    _watch(session, section, *days, hand)
 
 
 def _after_readings(
@@ -74,52 +96,61 @@ def _after_readings(
 ) -> None:
     """Voltages changed."""
     periods = periods_touching(house, block.from_ms, block.to_ms)
-    near = REACH_MS + DAY_MS
-    series = between(
+    hand = _at_hand(
         session,
-        section.cell_ids,
-        min(periods.from_ms, block.from_ms - REACH_MS - near),
-        max(periods.to_ms, block.to_ms + REACH_MS + near),
+        section,
+        min(periods.from_ms, block.from_ms - _AROUND_MS),
+        max(periods.to_ms, block.to_ms + _AROUND_MS),
     )
-    rebuild_summaries(session, section, periods, series)
+    rebuild_summaries(session, section, periods, hand.series)
     keep_latest(session, section.cell_ids)
-    _energy(session, section, *_bent_days(session, section, block, series), series)
-    _watch(session, section, block.from_ms, block.to_ms, series)
+    days = _bent_days(session, section, block.from_ms, block.to_ms, hand)
+    _energy(session, section, *days, hand)
+    _watch(session, section, block.from_ms, block.to_ms, hand)
+
+
+def _watch_again(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
+    """Replay the watch where only what was open before has changed."""
+    hand = _at_hand(session, section, from_ms - REACH_MS, to_ms + REACH_MS)
+    _watch(session, section, from_ms, to_ms, hand)
 
 
 def _bent_days(
-    session: Session, section: SectionPlan, block: StaleStretch, series: Series
+    session: Session, section: SectionPlan, from_ms: int, to_ms: int, hand: _AtHand
 ) -> tuple[int, int]:
-    """The UTC days whose voltages new readings bend: up to their cells' readings beside them."""
-    reach_from, reach_to = block.from_ms - REACH_MS, block.to_ms + REACH_MS
-    from_ms, to_ms = block.from_ms, block.to_ms
-    for cell_id in cells_recorded(session, section.cell_ids, block.from_ms, block.to_ms):
-        own_ms = series.at_ms[slice(*np.searchsorted(series.cell_id, [cell_id, cell_id + 1]))]
-        first, last = np.searchsorted(own_ms, [block.from_ms, block.to_ms])
-        before_ms = int(own_ms[first - 1]) if first > 0 else reach_from
-        after_ms = int(own_ms[last]) if last < len(own_ms) else reach_to
-        from_ms = min(from_ms, max(before_ms, reach_from))
-        to_ms = max(to_ms, min(after_ms, reach_to))
-    return utc_day_ms(from_ms), utc_day_ms(to_ms) + DAY_MS
+    """The UTC days whose voltages the readings of a stretch bend.
+
+    A reading bends the lines to its cell's readings on either side; one that has no neighbour
+    within reach is held as far as it reaches.
+    """
+    loaded = hand.loaded.series
+    bent_from, bent_to = from_ms, to_ms
+    for cell_id in cells_recorded(session, section.cell_ids, from_ms, to_ms):
+        own_ms = loaded.at_ms[slice(*np.searchsorted(loaded.cell_id, [cell_id, cell_id + 1]))]
+        first, last = np.searchsorted(own_ms, [from_ms, to_ms])
+        before_ms = int(own_ms[first - 1]) if first > 0 else 0
+        after_ms = int(own_ms[last]) if last < len(own_ms) else _FAR_MS
+        bent_from = min(bent_from, max(before_ms, from_ms - REACH_MS))
+        bent_to = max(bent_to, min(after_ms, to_ms + REACH_MS))
+    return utc_day_ms(bent_from), utc_day_ms(bent_to) + DAY_MS
 
 
 def _energy(
-    session: Session, section: SectionPlan, day_from: int, day_to: int, series: Series
+    session: Session, section: SectionPlan, day_from: int, day_to: int, hand: _AtHand
 ) -> None:
     """Work out the energy of whole UTC days for which there is a current."""
-    record = charge_record(session, section.id, day_from - REACH_MS, day_to + REACH_MS)
+    record = hand.record
     if not len(record.at_ms):
         keep_energy_days(session, section.id, day_from, day_to, [])
         return
     first = max(day_from, utc_day_ms(int(record.at_ms[0])))
     last = min(day_to, utc_day_ms(int(record.at_ms[-1])) + DAY_MS)
-    bypasses = bypasses_of(session, section.cell_ids, first - REACH_MS, last + REACH_MS)
-    near = series.within(first - REACH_MS, last + REACH_MS)
-    loaded, referred_v = readings_under_load(section, near, record, bypasses)
     rows = []
     for day_ms in range(first, last, DAY_MS):
-        inside = [b for b in bypasses if b[1] < day_ms + DAY_MS and b[2] > day_ms]
-        day = energy_of_day(section, day_ms, record, loaded, referred_v, inside)
+        inside = [b for b in hand.bypasses if b[1] < day_ms + DAY_MS and b[2] > day_ms]
+        day = energy_of_day(
+            section, day_ms, record, hand.loaded.series, hand.loaded.referred_v, inside
+        )
         charge_c, cell_c, measured_c, energy_j = day.hours.sum(axis=0).tolist()
         rows.append(
             (
@@ -135,20 +166,15 @@ def _energy(
     keep_energy_days(session, section.id, day_from, day_to, rows)
 
 
-def _watch_again(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
-    """Replay the watch where only what was open before has changed."""
-    series = between(session, section.cell_ids, from_ms - REACH_MS, to_ms)
-    _watch(session, section, from_ms, to_ms, series)
+def _watch(session: Session, section: SectionPlan, from_ms: int, to_ms: int, hand: _AtHand) -> None:
+    """Replay the watch over a stretch; go on later only where its outcome has changed.
 
-
-def _watch(
-    session: Session, section: SectionPlan, from_ms: int, to_ms: int, series: Series
-) -> None:
-    """Replay the watch over a stretch; go on later only where its outcome has changed."""
-    series = series.within(from_ms - REACH_MS, to_ms)
-    record = charge_record(session, section.id, from_ms - REACH_MS, to_ms)
-    bypasses = bypasses_of(session, section.cell_ids, from_ms - REACH_MS, to_ms)
-    loaded, referred_v = readings_under_load(section, series, record, bypasses)
+    What follows within a week is replayed too: a reading says whether the next one of its cell
+    is the second in a row, and what its neighbours are held against.
+    """
+    to_ms += REACH_MS
+    series = hand.series.within(from_ms - REACH_MS, to_ms)
+    watched = hand.loaded.within(from_ms - REACH_MS, to_ms)
     doubted = series.where((series.suspect != 0) & (series.at_ms >= from_ms))
     touching = flags_touching(session, from_ms, to_ms, section.id)
     open_before = [f for f in touching if f.raised_ms < from_ms]
@@ -161,7 +187,7 @@ def _watch(
         session.expunge(flag)
     raised, ended = replay(
         section,
-        Watched(loaded, referred_v, record.amps_at(loaded.at_ms)),
+        watched,
         doubted,
         reasons_between(session, section.id, from_ms, to_ms) if len(doubted) else {},
         open_before,

@@ -93,7 +93,7 @@ def _summed(section: SectionPlan, series: Series, periods: list[Period]) -> list
             SummaryRow(
                 start_ms=periods[period].from_ms,
                 end_ms=periods[period].to_ms,
-                cells_read=own.stop - own.start,
+                cells_read=int(own.stop - own.start),
                 readings=int(packed["readings"][own].sum()),
                 sum_uv=int(packed["sum_uv"][own].sum()),
                 cells=table.tobytes(),

@@ -36,6 +36,12 @@ class Watched:
     series: Series
     referred_v: NDArray[np.float64]
     amps: NDArray[np.float64]
+    """The section's current then; rated current where none is recorded."""
+
+    def within(self, from_ms: int, to_ms: int) -> "Watched":
+        """The readings with from_ms <= at < to_ms."""
+        keep = (self.series.at_ms >= from_ms) & (self.series.at_ms < to_ms)
+        return Watched(self.series.where(keep), self.referred_v[keep], self.amps[keep])
 
 
 @dataclass(frozen=True)

@@ -1,0 +1,119 @@
+"""Runs every measurement and prints what was wanted beside what was found.
+
+    make bench                          all of it, about a quarter of an hour
+    python -m tests.bench --small       the same on a plant of a few cells, to see that it runs
+
+Ratios are of one run on one machine and can be compared between machines; times cannot.
+"""
+
+import argparse
+import sys
+import tempfile
+from dataclasses import dataclass
+from pathlib import Path
+
+from rich.console import Console
+from rich.table import Table
+
+from server import clock
+from tests.bench.intake import import_against_bare
+from tests.bench.plant import DAY_S, Plant
+from tests.bench.serving import books_of, served
+
+console = Console()
+
+
+@dataclass(frozen=True)
+class Result:
+    """One line of the table: what was found, and what it must reach or must not pass."""
+
+    what: str
+    found: float
+    wanted: float
+    unit: str = ""
+    at_least: bool = False
+
+    @property
+    def is_met(self) -> bool:
+        """Whether it is as good as wanted."""
+        return self.found >= self.wanted if self.at_least else self.found <= self.wanted
+
+
+@dataclass(frozen=True)
+class Sizes:
+    """How much is measured."""
+
+    imported: Plant
+    large: Plant
+    small: Plant
+    runs: int
+    times: int
+
+
+def sizes(is_small: bool) -> Sizes:
+    """The sizes that are asked for; the plants end last midnight."""
+    end_s = clock.now_ms() // 1000 // DAY_S * DAY_S
+    if is_small:
+        return Sizes(
+            Plant(2, 20, 10, end_s), Plant(2, 20, 100, end_s), Plant(2, 20, 10, end_s), 1, 5
+        )
+    return Sizes(
+        imported=Plant(10, 100, 367, end_s),
+        large=Plant(10, 150, 1826, end_s),
+        small=Plant(10, 150, 183, end_s),
+        runs=5,
+        times=100,
+    )
+
+
+def results(of: Sizes, folder: Path) -> list[Result]:
+    """Measure everything."""
+    console.print(f"Importing {of.imported.readings:,} readings, {of.runs} times ...")
+    ratio, import_s, bare_s = import_against_bare(folder, of.imported, of.runs)
+    console.print(f"  {import_s:.1f} s, the bare driver {bare_s:.1f} s")
+    console.print(f"Filling a plant with {of.large.readings:,} readings, and one with a tenth ...")
+    large_books = books_of(folder / "large", of.large)
+    small_books = books_of(folder / "small", of.small)
+    console.print("Asking for every page, accounts and rounds ...")
+    large = served(large_books, of.large, of.times)
+    small = served(small_books, of.small, of.times)
+    slowest = max(large.pages, key=large.pages.__getitem__)
+    follows = {page: small.medians[page] / large.medians[page] for page in large.medians}
+    worst = min(follows, key=follows.__getitem__)
+    for page in sorted(large.pages):
+        console.print(
+            f"  {page:40} p50 {large.medians[page]:6.1f} ms   p95 {large.pages[page]:6.1f} ms"
+            f"   {follows[page]:.2f} of it with a tenth of the history"
+        )
+    return [
+        Result("import against the bare driver, rate", ratio, 0.30, at_least=True),
+        Result("one round of 60, acknowledged, p99", large.round_p99, 50, "ms"),
+        Result("accounts of a section over a year, p95", large.accounts_p95, 50, "ms"),
+        Result(f"slowest page, p95: {slowest}", large.pages[slowest], 100, "ms"),
+        Result(f"time with a tenth of the history: {worst}", follows[worst], 0.67, at_least=True),
+        Result("resident memory of the server", large.resident_mib, 300, "MiB"),
+    ]
+
+
+def main() -> int:
+    """Measure and print; answers 1 where a limit is missed on the full plant."""
+    parser = argparse.ArgumentParser(prog="python -m tests.bench")
+    parser.add_argument("--small", action="store_true", help="a few cells, to see that it runs")
+    is_small = parser.parse_args().small
+    with tempfile.TemporaryDirectory(prefix="ampledger-bench-") as folder:
+        found = results(sizes(is_small), Path(folder))
+    table = Table("what", "found", "wanted", "", title="Ampledger, measured")
+    for result in found:
+        bound = "at least" if result.at_least else "at most"
+        table.add_row(
+            result.what,
+            f"{result.found:.2f} {result.unit}".strip(),
+            f"{bound} {result.wanted:g} {result.unit}".strip(),
+            "met" if result.is_met else "missed",
+        )
+    console.print(table)
+    return 0 if is_small or all(result.is_met for result in found) else 1
+
+
+if __name__ == "__main__":
+    sys.exit(main())

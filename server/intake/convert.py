@@ -125,8 +125,10 @@ class Converter:
     def _sections(
         self, texts: Sequence[str], column: Column
     ) -> tuple[NDArray[np.int32], dict[int, Fault]]:
-        for text in set(texts) - self._codes.keys():
-            self._learn_section(text)
+        # In the order of the file, so that the same file always gives the same codes.
+        for text in dict.fromkeys(texts):
+            if text not in self._codes:
+                self._learn_section(text)
         codes = np.fromiter(map(self._codes.__getitem__, texts), dtype=np.int32, count=len(texts))
         unknown = np.flatnonzero(codes < 0).tolist()
         return codes, {i: self._section_faults[texts[i]] for i in unknown}

@@ -29,7 +29,7 @@ _AROUND_MS = 2 * REACH_MS + DAY_MS
 BLOCK_MS = 92 * DAY_MS
 """The longest stretch that is worked out in one transaction."""
 
-_ORDER: tuple[Kind, ...] = ("charge", "readings", "flags", "lots")
+_ORDER: tuple[Kind, ...] = ("charge", "readings", "energy", "flags", "lots")
 """Charge first: energy, flags and crops rest on it."""
 
 
@@ -52,6 +52,7 @@ def bring_up_to_date(session: Session, house: House, block: StaleStretch, max_ho
     work: dict[Kind, Callable[[], None]] = {
         "charge": lambda: _after_charge(session, section, block, max_hold_ms),
         "readings": lambda: _after_readings(session, house, section, block),
+        "energy": lambda: _after_both(session, section, block.from_ms, block.to_ms),
         "flags": lambda: _watch_again(session, section, block.from_ms, block.to_ms),
         "lots": lambda: replay_lots(session, section, block.from_ms),
     }
@@ -85,10 +86,8 @@ def _after_charge(
 ) -> None:
     """The current, or what lets it pass, changed."""
     days = rebuild_charge(session, section.id, block.from_ms, block.to_ms, max_hold_ms)
-    hand = _at_hand(session, section, days[0] - _AROUND_MS, days[1] + _AROUND_MS)
-    _energy(session, section, *_bent_days(session, section, *days, hand), hand)
     recharge_crops(session, section, *days)
-    _watch(session, section, *days, hand)
+    mark(session, section.id, "energy", *days)
 
 
 def _after_readings(
@@ -96,17 +95,17 @@ def _after_readings(
 ) -> None:
     """Voltages changed."""
     periods = periods_touching(house, block.from_ms, block.to_ms)
-    hand = _at_hand(
-        session,
-        section,
-        min(periods.from_ms, block.from_ms - _AROUND_MS),
-        max(periods.to_ms, block.to_ms + _AROUND_MS),
-    )
-    rebuild_summaries(session, section, periods, hand.series)
+    series = between(session, section.cell_ids, periods.from_ms, periods.to_ms)
+    rebuild_summaries(session, section, periods, series)
     keep_latest(session, section.cell_ids)
-    days = _bent_days(session, section, block.from_ms, block.to_ms, hand)
-    _energy(session, section, *days, hand)
-    _watch(session, section, block.from_ms, block.to_ms, hand)
+    mark(session, section.id, "energy", block.from_ms, block.to_ms)
+
+
+def _after_both(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
+    """What current and voltages give together: energy and the watch."""
+    hand = _at_hand(session, section, from_ms - _AROUND_MS, to_ms + _AROUND_MS)
+    _energy(session, section, *_bent_days(session, section, from_ms, to_ms, hand), hand)
+    _watch(session, section, from_ms, to_ms, hand)
 
 
 def _watch_again(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:

@@ -158,6 +158,6 @@ class Stale(Base):
     id: Mapped[int] = mapped_column(Whole, primary_key=True)
     section_id: Mapped[int] = mapped_column(Whole, ForeignKey("section.id"))
     kind: Mapped[str] = mapped_column(Words)
-    """charge, readings or lots."""
+    """charge, readings, lots, energy or flags."""
     from_ms: Mapped[int] = mapped_column(Whole)
     to_ms: Mapped[int] = mapped_column(Whole)

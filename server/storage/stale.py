@@ -7,8 +7,11 @@ from sqlalchemy.orm import Session
 
 from server.storage.direct import execute, fetch_rows, insert_rows
 
-Kind = Literal["charge", "readings", "lots"]
-"""What changed: the current or what lets it pass; the voltages; the weights."""
+Kind = Literal["charge", "energy", "flags", "lots", "readings"]
+"""What changed: the current or what lets it pass, the weights, or the voltages.
+
+Energy and flags follow from current and voltages together, and are marked by their upkeep.
+"""
 
 KINDS: tuple[Kind, ...] = get_args(Kind)
 

@@ -1,1 +1,1 @@
-"""How fast the tool is, as ratios within one run and times on this machine: `make bench`."""
+"""How fast the program is, as ratios and limits on the machine at hand; run by `make bench`."""

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 from sqlalchemy.orm import Session
 
 from server.intake.chunks import Chunk
+from server.intake.columns import SHEETS
 from server.intake.rows import Rows
 from server.intake.verdicts import Verdicts
 from server.storage.delivery_rows import Held, held_before
@@ -26,8 +27,21 @@ class Holding:
     """By line: what somebody decided of the same row before."""
 
 
-def held_of(chunk: Chunk, rows: Rows, verdicts: Verdicts) -> list[Held]:
-    """Every row of a chunk that cannot be taken, in the order of the file."""
+def held_of(chunk: Chunk, rows: Rows, verdicts: Verdicts, decimal: str) -> list[Held]:
+    """Every row of a chunk that cannot be taken, in the order of the file.
+
+    The fields are put down with a decimal point, however the file writes decimals, so that
+    they are read alike when somebody mends them.
+    """
+    numeric = {column.name for column in SHEETS[rows.kind].columns if column.is_numeric}
+
+    def as_json(fields: Mapping[str, str]) -> str:
+        pointed = {
+            name: text.replace(decimal, ".") if name in numeric else text
+            for name, text in fields.items()
+        }
+        return json.dumps(pointed, ensure_ascii=False)
+
     held = [
         Held(
             line=error.line,
@@ -35,7 +49,7 @@ def held_of(chunk: Chunk, rows: Rows, verdicts: Verdicts) -> list[Held]:
             found=error.found,
             expected=error.expected,
             reason=error.reason,
-            fields=json.dumps(dict(error.fields), ensure_ascii=False),
+            fields=as_json(error.fields),
             raw=error.raw,
         )
         for error in rows.errors
@@ -49,7 +63,7 @@ def held_of(chunk: Chunk, rows: Rows, verdicts: Verdicts) -> list[Held]:
                 found=fault.found,
                 expected=fault.expected,
                 reason=fault.reason,
-                fields=json.dumps(chunk.fields(position), ensure_ascii=False),
+                fields=as_json(chunk.fields(position)),
                 raw=chunk.raw[position],
             )
         )

@@ -15,7 +15,7 @@ from server.intake.volts import cell_of_another_time
 from server.storage.lots import effective_lots
 from server.storage.plant import SectionPlan
 from server.storage.records import Lot
-from server.storage.revisions import Revision
+from server.storage.revisions import Key, Revision
 from server.storage.stale import mark
 
 LONGEST_GROWTH_MS = 60 * 86_400_000
@@ -37,7 +37,7 @@ class LotTaker(RecordTaker):
     def begin(self) -> None:
         """Forget which lots there are: others may have written since."""
         self._hanging: dict[int, tuple[int, Hanging]] = {}
-        self._changed: dict[tuple[int, str], int] = {}
+        self._changed: dict[Key, Sequence[Revision]] = {}
 
     def found(self, rows: Rows, place: int, plan: SectionPlan) -> Found:
         """Give a row as a lot."""
@@ -135,23 +135,22 @@ class LotTaker(RecordTaker):
         )
 
     def accepted(self, row: Found, history: Sequence[Revision]) -> None:
-        """Note a lot, for those after it, and the time that its former version claimed."""
+        """Note a lot, for those after it."""
         most = row.plan.terms_at(row.values["pulled_ms"]).cathodes_per_cell
         self._hanging[row.plan.id][1].add(parse_cells(row.values["cells"]), _growth(row, most))
-        self._changed[row.key] = min(_first_ms(revision.values) for revision in history)
+        self._changed[row.key] = history
 
     def mark_stale(self, session: Session, found: Sequence[Found]) -> None:
         """Mark the time from which crops are worked out anew."""
-        mark_lots(session, found, self._changed)
+        for row in found:
+            mark_lots(session, row.plan.id, self._changed[row.key])
 
 
-def mark_lots(
-    session: Session, found: Sequence[Found], changed_from: Mapping[tuple[int, str], int]
-) -> None:
-    """Mark the time in which lots grew, from the first moment that any version claimed."""
-    for row in found:
-        from_ms = min(changed_from[row.key], _first_ms(row.values))
-        mark(session, row.plan.id, "lots", from_ms, row.values["pulled_ms"] + 1)
+def mark_lots(session: Session, section_id: int, history: Sequence[Revision]) -> None:
+    """Mark the time in which a lot grew, by any of its revisions."""
+    from_ms = min(_first_ms(revision.values) for revision in history)
+    to_ms = max(int(revision.values["pulled_ms"]) for revision in history)
+    mark(session, section_id, "lots", from_ms, to_ms + 1)
 
 
 def _first_ms(values: Mapping[str, Any]) -> int:

@@ -13,7 +13,7 @@ from server.intake.volts import cell_of_another_time
 from server.storage.current import effective_outages, keep_bypasses
 from server.storage.plant import SectionPlan
 from server.storage.records import Outage
-from server.storage.revisions import Revision
+from server.storage.revisions import Key, Revision
 from server.storage.stale import mark
 
 OPEN_END_MS = 2**53
@@ -33,7 +33,7 @@ class OutageTaker(RecordTaker):
     def begin(self) -> None:
         """Forget which outages there are: others may have written since."""
         self._known: dict[int, dict[tuple[str, int], int]] = {}
-        self._changed: dict[tuple[int, str, int], _Span] = {}
+        self._changed: dict[Key, Sequence[Revision]] = {}
 
     def found(self, rows: Rows, place: int, plan: SectionPlan) -> Found:
         """Give a row as an outage."""
@@ -116,30 +116,34 @@ class OutageTaker(RecordTaker):
         return None
 
     def accepted(self, row: Found, history: Sequence[Revision]) -> None:
-        """Note an outage for those after it, and the time that any version of it claimed."""
+        """Note an outage for those after it."""
         _, cells, from_ms = row.key
         self._known[row.plan.id][(cells, from_ms)] = _end_ms(row.values)
-        ends = [_end_ms(revision.values) for revision in history]
-        # What stayed the same up to the earlier of two ends need not be worked out anew.
-        first_ms = from_ms if len(ends) == 1 else min(ends)
-        if len({revision.values["state"] for revision in history}) > 1:
-            first_ms = from_ms
-        self._changed[row.key] = (first_ms, max(ends))
+        self._changed[row.key] = history
 
     def mark_stale(self, session: Session, found: Sequence[Found]) -> None:
         """Mark the time of the outages, and keep when which cell was bypassed."""
         for row in found:
-            from_ms, end_ms = self._changed[row.key]
-            mark_outage(session, row.plan, from_ms, end_ms, self._given.now_ms)
+            mark_outages(
+                session, row.plan.id, row.key[2], self._changed[row.key], self._given.now_ms
+            )
         for plan in {row.plan.id: row.plan for row in found if row.key[1]}.values():
             refresh_bypasses(session, plan)
 
 
-def mark_outage(
-    session: Session, plan: SectionPlan, from_ms: int, end_ms: int, now_ms: int
+def mark_outages(
+    session: Session, section_id: int, from_ms: int, history: Sequence[Revision], now_ms: int
 ) -> None:
-    """Mark the time of an outage; of what still lasts, up to now."""
-    mark(session, plan.id, "charge", from_ms, max(min(end_ms, now_ms), from_ms) + 1)
+    """Mark the time in which an outage by any of its revisions made a difference.
+
+    What still lasts makes one up to now. An outage that is only completed makes none before
+    its end.
+    """
+    ends = [_end_ms(revision.values) for revision in history]
+    is_completed = len(history) > 1 and not any(revision.is_void for revision in history)
+    start_ms = min(ends) if is_completed else from_ms
+    end_ms = max(min(max(ends), now_ms), start_ms)
+    mark(session, section_id, "charge", start_ms, end_ms + 1)
 
 
 def refresh_bypasses(session: Session, plan: SectionPlan) -> None:

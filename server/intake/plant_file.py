@@ -29,6 +29,19 @@ from server.storage.plant import (
     has_plant,
 )
 
+__all__ = [
+    "Change",
+    "PlantFault",
+    "PlantFile",
+    "PlantFileWrong",
+    "add_cells",
+    "add_house_terms",
+    "found_plant",
+    "found_section",
+    "read_plant",
+    "terms_of",
+]
+
 
 @dataclass(frozen=True, slots=True)
 class Change:

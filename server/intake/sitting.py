@@ -5,7 +5,7 @@ from typing import Protocol
 
 from sqlalchemy.orm import Session
 
-from server.intake.chunks import MEBIBYTE, Chunk, Limits
+from server.intake.chunks import MEBIBYTE, Chunk, Limits, Sheet
 from server.intake.convert import Converter
 from server.intake.holding import Holding, held_of, sorted_out
 from server.intake.kinds import taker_for
@@ -86,6 +86,7 @@ class Sitting:
     ) -> None:
         self.sheet = sheet
         self.counts = Counts()
+        self._decimal = decimal
         self._converter = Converter(
             sheet,
             zone=given.zone,
@@ -101,10 +102,18 @@ class Sitting:
         """Turn the text of a chunk into values; this needs no database."""
         return self._converter.convert(chunk)
 
-    def judge(self, session: Session, chunk: Chunk, rows: Rows) -> Judged:
-        """Decide on every row of a chunk, and count."""
+    def judge(
+        self, session: Session, chunk: Chunk, rows: Rows, *, is_mended: bool = False
+    ) -> Judged:
+        """Decide on every row of a chunk, and count.
+
+        A row that is mended is held already, and is not held once more.
+        """
         verdicts = self.taker.judge(session, rows)
-        held = sorted_out(session, self.sheet, held_of(chunk, rows, verdicts))
+        faulty = held_of(chunk, rows, verdicts, self._decimal)
+        held = (
+            Holding((), tuple(faulty), {}) if is_mended else sorted_out(session, self.sheet, faulty)
+        )
         counts = self.counts
         counts.rows += len(chunk) + len(chunk.errors)
         counts.stored += len(verdicts.new)
@@ -128,6 +137,31 @@ def limits_of(settings: IntakeSettings) -> Limits:
     )
 
 
-def given_of(house: House, now_ms: int, settings: IntakeSettings, reason: str) -> Given:
+def given_of(
+    house: House, now_ms: int, settings: IntakeSettings, reason: str, sender: str = ""
+) -> Given:
     """What is known about a delivery before its rows are read."""
-    return Given(house, now_ms, settings.max_hold_ms, " ".join(reason.split()))
+    return Given(house, now_ms, settings.max_hold_ms, " ".join(reason.split()), sender)
+
+
+def sitting_of(
+    sheet: Sheet,
+    house: House,
+    now_ms: int,
+    settings: IntakeSettings,
+    reason: str,
+    sender: str = "",
+) -> Sitting:
+    """Begin the reading of a sheet of a file."""
+    return Sitting(
+        sheet.kind,
+        given_of(house, now_ms, settings, reason, sender),
+        settings,
+        decimal=sheet.dialect.decimal,
+        file=source_of(sheet.file, sheet),
+    )
+
+
+def source_of(name: str, sheet: Sheet) -> str:
+    """Name a sheet of a file as the books have it."""
+    return f"{name}, {sheet.worksheet}" if sheet.worksheet else name

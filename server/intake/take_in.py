@@ -2,7 +2,7 @@
 
 import hashlib
 import tempfile
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from contextlib import contextmanager
 from pathlib import Path
 from typing import BinaryIO, cast
@@ -12,17 +12,18 @@ from sqlalchemy.orm import Session
 from server.intake.chunks import MEBIBYTE, Sheet
 from server.intake.delimited import BLOCK_BYTES, blocks
 from server.intake.kinds import ORDER
-from server.intake.results import (
-    DeliveryResult,
-    FilePreview,
-    FileResult,
-    HeldPreview,
-    RecordResult,
-    SheetPreview,
-    SuspectPreview,
-)
+from server.intake.preview import Progress, preview_file
+from server.intake.results import DeliveryResult, FileResult, RecordResult
 from server.intake.sheets import Limits, open_sheets, records_chunk
-from server.intake.sitting import IntakeSettings, Judged, Sitting, given_of, limits_of
+from server.intake.sitting import (
+    IntakeSettings,
+    Judged,
+    Sitting,
+    given_of,
+    limits_of,
+    sitting_of,
+    source_of,
+)
 from server.intake.verdicts import Outcome
 from server.storage.database import Database
 from server.storage.deliveries import Delivery
@@ -35,11 +36,14 @@ from server.storage.delivery_rows import (
 from server.storage.plant import House
 from server.storage.turns import take_turn
 
-Progress = Callable[[int, int], None]
-"""Told how many bytes of how many have been read."""
-
-FIRST_ROWS = 20
-"""Rows of each sort that a preview shows."""
+__all__ = [
+    "Progress",
+    "answers_of",
+    "mend_record",
+    "preview_file",
+    "take_in_file",
+    "take_in_records",
+]
 
 
 def take_in_file(
@@ -78,7 +82,7 @@ def take_in_file(
         for sheet in sorted(file.sheets, key=lambda sheet: ORDER.index(sheet.kind)):
             delivery = Delivery(
                 sheet=sheet.kind,
-                source=_source(name, sheet),
+                source=source_of(name, sheet),
                 sender=sender,
                 received_ms=now_ms,
                 reason=given_of(house, now_ms, settings, reason).reason,
@@ -97,7 +101,9 @@ def _take_sheet(
     settings: IntakeSettings,
     progress: Progress | None,
 ) -> DeliveryResult:
-    sitting = _sitting(sheet, house, delivery.received_ms, settings, delivery.reason)
+    sitting = sitting_of(
+        sheet, house, delivery.received_ms, settings, delivery.reason, delivery.sender
+    )
     with database.write() as session:
         delivery_id = add_delivery(session, delivery)
     for chunk in sheet.chunks():
@@ -122,102 +128,6 @@ def _take_sheet(
         suspect=counts.suspect,
         unknown_columns=sheet.unknown_columns,
     )
-
-
-def preview_file(
-    session: Session,
-    house: House,
-    source: Path | BinaryIO,
-    name: str,
-    now_ms: int,
-    settings: IntakeSettings,
-    reason: str = "",
-    progress: Progress | None = None,
-) -> FilePreview:
-    """Tell what a file would bring, with the first rows of each sort; stores nothing.
-
-    Raises
-    ------
-    FileRefused
-        When it cannot be read as a sheet.
-    """
-    limits = limits_of(settings)
-    with open_sheets(source, name, limits=limits) as file:
-        sheets = sorted(file.sheets, key=lambda sheet: ORDER.index(sheet.kind))
-        previews = tuple(
-            _preview_sheet(session, house, sheet, now_ms, settings, reason, progress)
-            for sheet in sheets
-        )
-        return FilePreview(name, previews, file.ignored)
-
-
-def _preview_sheet(
-    session: Session,
-    house: House,
-    sheet: Sheet,
-    now_ms: int,
-    settings: IntakeSettings,
-    reason: str,
-    progress: Progress | None,
-) -> SheetPreview:
-    sitting = _sitting(sheet, house, now_ms, settings, reason)
-    held: list[HeldPreview] = []
-    suspect: list[SuspectPreview] = []
-    spans: list[tuple[int, int]] = []
-    for chunk in sheet.chunks():
-        rows = sitting.read(chunk)
-        judged = sitting.judge(session, chunk, rows)
-        if len(rows):
-            moments = sitting.taker.moments(rows)
-            spans.append((int(moments.min()), int(moments.max())))
-        held.extend(_first_held(judged, FIRST_ROWS - len(held)))
-        suspect.extend(_first_suspect(house, judged, FIRST_ROWS - len(suspect)))
-        if progress is not None:
-            progress(chunk.bytes_read, sheet.size_bytes)
-    counts = sitting.counts
-    return SheetPreview(
-        sheet=sheet.kind,
-        worksheet=sheet.worksheet,
-        dialect=sheet.dialect.sentence,
-        rows=counts.rows,
-        new=counts.stored,
-        duplicates=counts.duplicates,
-        held=counts.held,
-        suspect=counts.suspect,
-        first_ms=min((first for first, _ in spans), default=None),
-        last_ms=max((last for _, last in spans), default=None),
-        first_held=tuple(held),
-        first_suspect=tuple(suspect),
-        unknown_columns=sheet.unknown_columns,
-    )
-
-
-def _first_held(judged: Judged, most: int) -> list[HeldPreview]:
-    held = sorted((*judged.holding.new, *judged.holding.again), key=lambda row: row.line)
-    return [
-        HeldPreview(row.line, row.column, row.found, row.expected, row.reason, row.raw)
-        for row in held[: max(most, 0)]
-    ]
-
-
-def _first_suspect(house: House, judged: Judged, most: int) -> list[SuspectPreview]:
-    doubts = sorted(judged.verdicts.doubts.values(), key=lambda doubt: doubt.line)
-    previews = []
-    for doubt in doubts[: max(most, 0)]:
-        plan = house.section_of_id(doubt.section_id)
-        previews.append(
-            SuspectPreview(
-                doubt.line,
-                plan.name,
-                plan.number_of(doubt.cell_id),
-                doubt.at_ms,
-                doubt.found,
-                doubt.expected,
-                doubt.suggested,
-                doubt.reason,
-            )
-        )
-    return previews
 
 
 def take_in_records(
@@ -277,7 +187,7 @@ def _take_records(
     delivery: Delivery,
     settings: IntakeSettings,
 ) -> list[RecordResult]:
-    given = given_of(house, delivery.received_ms, settings, delivery.reason)
+    given = given_of(house, delivery.received_ms, settings, delivery.reason, delivery.sender)
     sitting = Sitting(kind, given, settings, file=delivery.source)
     chunk = records_chunk(kind, records, file=delivery.source)
     judged = sitting.judge(session, chunk, sitting.read(chunk))
@@ -289,6 +199,25 @@ def _take_records(
         taken = [answer.id for answer in answers if answer.id and answer.status != "held"]
         keep_sent_ids(session, delivery_id, taken)
     return answers
+
+
+def mend_record(
+    session: Session,
+    house: House,
+    fields: Mapping[str, str],
+    delivery: Delivery,
+    settings: IntakeSettings,
+) -> RecordResult:
+    """Take in one record that stood in a held row; where it is still wrong, it is left there."""
+    given = given_of(house, delivery.received_ms, settings, delivery.reason, delivery.sender)
+    sitting = Sitting(delivery.sheet, given, settings, file=delivery.source)
+    chunk = records_chunk(delivery.sheet, [fields], file=delivery.source)
+    judged = sitting.judge(session, chunk, sitting.read(chunk), is_mended=True)
+    if judged.is_to_be_written:
+        delivery_id = add_delivery(session, delivery)
+        sitting.write(session, judged, delivery_id)
+        keep_counts(session, delivery_id, sitting.counts.as_columns())
+    return answers_of(judged, [None])[0]
 
 
 def answers_of(judged: Judged, ids: Sequence[str | None]) -> list[RecordResult]:
@@ -314,22 +243,6 @@ def answers_of(judged: Judged, ids: Sequence[str | None]) -> list[RecordResult]:
 def _sent_id(record: Mapping[str, object]) -> str | None:
     sent_id = record.get("id")
     return str(sent_id).lower() if sent_id else None
-
-
-def _sitting(
-    sheet: Sheet, house: House, now_ms: int, settings: IntakeSettings, reason: str
-) -> Sitting:
-    return Sitting(
-        sheet.kind,
-        given_of(house, now_ms, settings, reason),
-        settings,
-        decimal=sheet.dialect.decimal,
-        file=_source(sheet.file, sheet),
-    )
-
-
-def _source(name: str, sheet: Sheet) -> str:
-    return f"{name}, {sheet.worksheet}" if sheet.worksheet else name
 
 
 def _look_through(stream: BinaryIO, sheet: Sheet, limits: Limits) -> None:

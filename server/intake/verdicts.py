@@ -78,6 +78,7 @@ class Given:
     now_ms: int
     max_hold_ms: int
     reason: str = ""
+    sender: str = ""
 
     @property
     def is_correction(self) -> bool:

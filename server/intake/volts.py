@@ -16,6 +16,7 @@ from server.science.units import microvolts_from_volts, volts_from_microvolts
 from server.storage import readings
 from server.storage.delivery_rows import Doubt
 from server.storage.plant import SectionPlan
+from server.storage.suspicions import decide_suspicions
 
 Whole = NDArray[np.int64]
 
@@ -80,6 +81,16 @@ class VoltsTaker:
             suspect[new],
             delivery_id,
         )
+        is_changed = verdicts.revision[new] > 0
+        if is_changed.any():
+            decide_suspicions(
+                session,
+                zip(cell_id[is_changed].tolist(), at_ms[is_changed].tolist(), strict=True),
+                "corrected",
+                self._given.sender,
+                self._given.reason,
+                self._given.now_ms,
+            )
         for place, plan in enumerate(plans):
             if len(mine := at_ms[code == place]):
                 mark_moments(session, plan.id, "readings", mine)

@@ -8,6 +8,7 @@ from sqlalchemy.orm import Session
 
 from server.storage.deliveries import Delivery
 from server.storage.direct import fetch_rows, insert_rows, marks
+from server.storage.errors import NotFound
 
 _AT_ONCE = 500
 """Values asked for with one statement."""
@@ -49,6 +50,14 @@ def add_delivery(session: Session, delivery: Delivery) -> int:
     delivery_id = delivery.id
     session.expunge(delivery)
     return delivery_id
+
+
+def delivery_with_id(session: Session, delivery_id: int) -> Delivery:
+    """The delivery of this number."""
+    delivery = session.get(Delivery, delivery_id)
+    if delivery is None:
+        raise NotFound("delivery", delivery_id)
+    return delivery
 
 
 def keep_counts(session: Session, delivery_id: int, counts: Mapping[str, int]) -> None:

@@ -12,11 +12,10 @@ from sqlalchemy.engine import make_url
 from sqlalchemy.orm import Session
 
 from server.settings import MIGRATIONS
+from server.storage.turns import take_turn
 
 _WRITER_CACHE_KIB = 65_536
 _READER_CACHE_KIB = 8_192
-_WRITE_LOCK = 0x414D504C
-"""Number of PostgreSQL's advisory lock under which this program writes."""
 
 
 class Database:
@@ -82,9 +81,8 @@ class Database:
         """A session that commits when the block ends well, and leaves no trace when it does not."""
         if not self.is_sqlite:
             with Session(self._writer) as session, session.begin():
-                # One writer at a time, as in SQLite: figures are brought up to date from records
-                # that no other transaction is adding to meanwhile.
-                session.execute(text(f"SELECT pg_advisory_xact_lock({_WRITE_LOCK})"))
+                # Figures are brought up to date from records that nobody is adding to meanwhile.
+                take_turn(session)
                 yield session
             return
         with self._writing, Session(self._writer) as session, session.begin():

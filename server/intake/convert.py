@@ -125,13 +125,19 @@ class Converter:
     def _sections(
         self, texts: Sequence[str], column: Column
     ) -> tuple[NDArray[np.int32], dict[int, Fault]]:
-        # In the order of the file, so that the same file always gives the same codes.
-        for text in dict.fromkeys(texts):
-            if text not in self._codes:
-                self._learn_section(text)
-        codes = np.fromiter(map(self._codes.__getitem__, texts), dtype=np.int32, count=len(texts))
+        try:
+            codes = self._codes_of(texts)
+        except KeyError:
+            # In the order of the file, so that the same file always gives the same codes.
+            for text in dict.fromkeys(texts):
+                if text not in self._codes:
+                    self._learn_section(text)
+            codes = self._codes_of(texts)
         unknown = np.flatnonzero(codes < 0).tolist()
         return codes, {i: self._section_faults[texts[i]] for i in unknown}
+
+    def _codes_of(self, texts: Sequence[str]) -> NDArray[np.int32]:
+        return np.fromiter(map(self._codes.__getitem__, texts), dtype=np.int32, count=len(texts))
 
     def _learn_section(self, text: str) -> None:
         name = " ".join(text.split())

@@ -135,7 +135,8 @@ def open_delimited(stream: BinaryIO, *, file: str, size_bytes: int, limits: Limi
     known = [kind.column(name) if name in kind.names else None for name in names]
     layout = _Layout(file, delimiter, tuple(names), kind.names, limits)
     sample = list(islice(_sample_rows(lines[place + 1 :], header_line + 1, layout), SAMPLE_ROWS))
-    _refuse_unquoted_decimals(sample, layout)
+    if any(column and column.is_numeric for column in known):
+        _refuse_unquoted_decimals(sample, layout)
     mark, evidence, evidence_line, seen = decimals_of(sample, known, delimiter=delimiter, file=file)
     return Sheet(
         file=file,

@@ -56,7 +56,9 @@ def read_whole(
     joined = "".join(texts)
     if joined.isascii() and joined.isdigit() and len(joined) <= _WHOLE_DIGITS * len(texts):
         try:
-            whole = np.fromiter(map(int, texts), dtype=np.int64, count=len(texts))
+            # Cells are few and come again and again: each text is read once.
+            known = {text: int(text) for text in set(texts)}
+            whole = np.fromiter(map(known.__getitem__, texts), dtype=np.int64, count=len(texts))
         except (ValueError, OverflowError):
             pass
         else:

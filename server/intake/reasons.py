@@ -39,6 +39,7 @@ ROW_REASONS: dict[str, str] = {
     "fields": "The row has {found} fields; expected {expected}.",
     "quotes": "A quotation mark is opened and not closed; expected {expected}.",
     "long_field": "A field is {found} long; expected {expected}.",
+    "cell_unreadable": "The row holds a cell that cannot be read; expected {expected}.",
     "control": "{column} holds a control character; expected {expected}.",
     "empty": "{column} is empty; expected {expected}.",
     "not_a_number": "{column} “{found}” is not a number; expected {expected}.",

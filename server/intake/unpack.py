@@ -101,7 +101,7 @@ def safe_workbook(stream: BinaryIO, *, file: str, limits: Limits) -> io.BytesIO:
     try:
         with zipfile.ZipFile(stream) as archive:
             return _repacked(archive, file=file, limits=limits)
-    except (zipfile.BadZipFile, zlib.error, EOFError, OSError, NotImplementedError) as error:
+    except (zipfile.BadZipFile, zlib.error, EOFError, OSError, RuntimeError, ValueError) as error:
         raise FileRefused(
             "workbook_damaged", file=file, found=str(error), expected="a workbook that Excel opens"
         ) from None

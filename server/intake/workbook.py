@@ -6,7 +6,7 @@ import io
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import partial
-from itertools import islice
+from itertools import count, islice
 from typing import BinaryIO
 
 import numpy as np
@@ -110,8 +110,8 @@ class _Layout:
 def _sheet(
     workbook: _Workbook, worksheet: str, *, file: str, size_bytes: int, limits: Limits
 ) -> Sheet:
-    rows = enumerate(workbook.worksheet(worksheet).iter_rows(), start=1)
-    first = next(((line, row) for line, row in rows if any(_is_filled(v) for v in row)), None)
+    rows = _rows(workbook.worksheet(worksheet))
+    first = next(((line, row) for line, row in rows if row and any(map(_is_filled, row))), None)
     if first is None:
         raise FileRefused("empty", file=file, expected="a header and rows")
     header_line, heading = first
@@ -125,7 +125,7 @@ def _sheet(
     ]
     # Only numbers that somebody typed as text say anything about the decimal mark.
     sample = (
-        (line, [value if isinstance(value, str) else "" for value in row])
+        (line, [value if isinstance(value, str) else "" for value in row or ()])
         for line, row in islice(rows, SAMPLE_ROWS)
     )
     mark, evidence, evidence_line, seen = decimals_of(sample, known, delimiter="", file=file)
@@ -178,25 +178,42 @@ def cell_text(value: Value, decimal: str) -> str:
     return str(value)
 
 
+def _rows(worksheet: CalamineSheet) -> Iterator[tuple[int, list[Value] | None]]:
+    """Rows with their numbers; None for one with a duration too long for any calendar."""
+    rows = worksheet.iter_rows()
+    for line in count(1):
+        try:
+            yield line, next(rows)
+        except StopIteration:
+            return
+        except OverflowError:
+            yield line, None
+
+
 def _chunks(workbook: _Workbook, layout: _Layout) -> Iterator[Chunk]:
     worksheet = workbook.worksheet(layout.worksheet)
     height = max(worksheet.total_height, 1)
-    rows = enumerate(worksheet.iter_rows(), start=1)
-    rows = islice(rows, layout.header_line, None)  # type: ignore[assignment]
+    rows = islice(_rows(worksheet), layout.header_line, None)
     while taken := list(islice(rows, ROWS_IN_A_CHUNK)):
-        chunk = _chunk(taken, layout, taken[-1][0] * layout.size_bytes // height)
+        chunk = _chunk(taken, layout, min(taken[-1][0] / height, 1.0))
         if len(chunk) or chunk.errors:
             yield chunk
 
 
-def _chunk(taken: Sequence[tuple[int, Sequence[Value]]], layout: _Layout, bytes_read: int) -> Chunk:
+def _chunk(
+    taken: Sequence[tuple[int, list[Value] | None]], layout: _Layout, share_read: float
+) -> Chunk:
     width = len(layout.names)
     numbers: list[int] = []
     rows: list[list[str]] = []
     raws: list[str] = []
     errors: list[RowError] = []
     for line, values in taken:
-        if not any(_is_filled(value) for value in values):
+        if values is None:
+            expected = "dates and durations within the calendar"
+            errors.append(_error(layout, "cell_unreadable", line, [], "", expected))
+            continue
+        if not any(map(_is_filled, values)):
             continue
         texts = [cell_text(value, layout.decimal) for value in values]
         fault = _fault(texts, width, layout.limits)
@@ -204,23 +221,28 @@ def _chunk(taken: Sequence[tuple[int, Sequence[Value]]], layout: _Layout, bytes_
             numbers.append(line)
             rows.append(texts)
             raws.append(_as_csv(texts[:width]))
-            continue
-        code, found, expected = fault
-        errors.append(
-            row_error(
-                code,
-                file=layout.file,
-                line=line,
-                raw=_as_csv(texts),
-                found=found,
-                expected=expected,
-                fields={name: texts[i] for name, i in layout.places.items()},
-            )
-        )
+        else:
+            code, found, expected = fault
+            errors.append(_error(layout, code, line, texts, found, expected))
     columns = {
         name: [row[i] if i < len(row) else "" for row in rows] for name, i in layout.places.items()
     }
+    bytes_read = round(share_read * layout.size_bytes)
     return Chunk(np.array(numbers, dtype=np.int64), columns, raws, tuple(errors), bytes_read)
+
+
+def _error(
+    layout: _Layout, code: str, line: int, texts: Sequence[str], found: str, expected: str
+) -> RowError:
+    return row_error(
+        code,
+        file=layout.file,
+        line=line,
+        raw=_as_csv(texts),
+        found=found,
+        expected=expected,
+        fields={name: texts[i] for name, i in layout.places.items() if i < len(texts)},
+    )
 
 
 def _fault(texts: Sequence[str], width: int, limits: Limits) -> tuple[str, str, str] | None:

@@ -1,10 +1,12 @@
 import datetime
 import io
+from zoneinfo import ZoneInfo
 
 import pytest
 import xlsxwriter
 
 from server.intake import workbook as worksheets
+from server.intake.convert import Converter
 from server.intake.errors import FileRefused
 from server.intake.sheets import open_sheets
 
@@ -190,3 +192,37 @@ def test_a_bool_and_an_error_in_a_cell_do_not_pass_for_numbers():
         found, _ = rows_of(file.sheets[0])
 
     assert found[0][1][2] == "TRUE"
+
+
+def test_a_duration_beyond_any_calendar_costs_one_row_only():
+    packed = io.BytesIO()
+    with xlsxwriter.Workbook(packed, {"in_memory": True}) as book:
+        sheet = book.add_worksheet("volts")
+        sheet.write_row(0, 0, HEADER)
+        sheet.write_row(1, 0, ["t", "EW1", 1, 2.0])
+        sheet.write_number(2, 3, 1e10, book.add_format({"num_format": "[h]:mm"}))
+        sheet.write_row(3, 0, ["t", "EW1", 2, 2.0])
+    packed.seek(0)
+
+    with open_sheets(packed, "readings.xlsx") as file:
+        found, errors = rows_of(file.sheets[0])
+
+    assert [line for line, _ in found] == [2, 4]
+    assert errors == [(3, "cell_unreadable")]
+
+
+@pytest.mark.parametrize("number", [1e300, -5.0, 2958466.5, 0.5])
+def test_a_number_that_is_no_date_is_no_time(number):
+    packed = io.BytesIO()
+    with xlsxwriter.Workbook(packed, {"in_memory": True}) as book:
+        sheet = book.add_worksheet("volts")
+        sheet.write_row(0, 0, HEADER)
+        sheet.write_row(1, 1, ["EW1", 1, 2.0])
+        sheet.write_number(1, 0, number, book.add_format({"num_format": "yyyy-mm-dd hh:mm"}))
+    packed.seek(0)
+
+    with open_sheets(packed, "readings.xlsx") as file:
+        (chunk,) = file.sheets[0].chunks()
+        rows = Converter("volts", zone=ZoneInfo("UTC"), now_ms=1_800_000_000_000).convert(chunk)
+
+    assert [error.column for error in rows.errors] == ["at"]

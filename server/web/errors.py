@@ -87,7 +87,7 @@ def answer(
 ) -> Response:
     """The error in the form that whoever asked can read."""
     if is_api(request):
-        return problem(status, detail, headers=headers, **more)
+        return problem(status, detail, headers=headers, instance=request.url.path, **more)
     return page(
         request,
         "error.html",
@@ -103,6 +103,7 @@ def _sign_in_needed(request: Request, _error: Exception) -> Response:
             401,
             _("Sign in, or send a token: Authorization: Bearer ..."),
             headers={"www-authenticate": "Bearer"},
+            instance=request.url.path,
         )
     wanted = request.url.path + (f"?{request.url.query}" if request.url.query else "")
     where = f"?next={quote(wanted)}" if request.method in SAFE_METHODS and wanted != "/" else ""
@@ -174,11 +175,8 @@ def _http(request: Request, error: Exception) -> Response:
 
 
 def _unforeseen(request: Request, error: Exception) -> Response:
-    """Answers outside of every middleware, so that language and headers are seen to here.
-
-    The server itself writes the trace into its log.
-    """
-    log.error("unforeseen error", path=request.url.path, error=type(error).__name__)
+    """May answer outside of every middleware, so that language and headers are seen to here."""
+    log.error("unforeseen error", exc_info=error)
     accepted = request.headers.get("accept-language", "")
     language = chosen_language(request.cookies.get(LANGUAGE_COOKIE), accepted, SOURCE_LANGUAGE)
     with speaking(language):

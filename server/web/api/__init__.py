@@ -1,0 +1,1 @@
+"""The API under /api/v1: JSON, one file per resource."""

@@ -1,0 +1,39 @@
+"""Flags from SI to the units that the API's fields name."""
+
+from typing import Any
+
+from server.science.units import ka_from_amps, millivolts_from_volts
+from server.watch.flags import FlagResult
+from server.watch.worklist import WorkItem
+from server.web.api.account_answers import known
+from server.web.api.schemas import FlagAnswer, WorkItemAnswer
+
+
+def flag_answer(flag: FlagResult) -> FlagAnswer:
+    """A flag as the API answers it."""
+    return FlagAnswer(**_fields(flag))
+
+
+def work_item_answer(item: WorkItem) -> WorkItemAnswer:
+    """An item of the work list as the API answers it."""
+    return WorkItemAnswer(**_fields(item.flag), rank=item.rank, walk=item.walk)
+
+
+def _fields(flag: FlagResult) -> dict[str, Any]:
+    return {
+        "section": flag.section,
+        "cell": flag.cell,
+        "kind": flag.kind,
+        "tier": flag.tier,
+        "raised_at": flag.raised_ms,
+        "ended_at": flag.ended_ms,
+        "raised_by": flag.raised_by_ms,
+        "volts": flag.volts,
+        "expected_volts": flag.expected_volts,
+        "deviation_mv": known(flag.deviation_v, millivolts_from_volts),
+        "short_ka": known(flag.short_amps, ka_from_amps),
+        "u_short_ka": known(flag.u_short_amps, ka_from_amps),
+        "lost_kg_per_day": flag.lost_kg_per_day,
+        "lost_value_per_day": flag.lost_value_per_day,
+        "evidence": flag.evidence,
+    }

@@ -1,0 +1,38 @@
+"""What the watch says of the cells."""
+
+from typing import Annotated
+
+from fastapi import Query
+
+from server.watch.flags import flags_between
+from server.web.api.flag_answers import flag_answer
+from server.web.api.parameters import FromTime, SectionIfAny, ToTime
+from server.web.api.resource import problems, resource
+from server.web.api.schemas import Flags, Tier
+from server.web.dependencies import DbSession, ThisHouse, requires
+from server.web.moments import span_of
+
+router = resource("flags")
+
+OnlyOpen = Annotated[bool, Query(alias="open", description="Only flags that are open still.")]
+
+
+@router.get(
+    "/flags",
+    summary="Flags whose life touches a period",
+    dependencies=[requires("reader")],
+    responses=problems(404),
+)
+def get_flags(
+    db: DbSession,
+    house: ThisHouse,
+    from_time: FromTime,
+    to_time: ToTime,
+    section: SectionIfAny = None,
+    open_only: OnlyOpen = False,
+    tier: Tier | None = None,
+) -> Flags:
+    """Answer every flag that was open at some moment of the period."""
+    from_ms, to_ms = span_of(from_time, to_time, house)
+    found = flags_between(db, house, from_ms, to_ms, section, open_only, tier)
+    return Flags(flags=[flag_answer(flag) for flag in found])

@@ -1,0 +1,1 @@
+"""The pages: HTML, one file per page."""

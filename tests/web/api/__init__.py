@@ -1,0 +1,1 @@
+"""Tests of the API, one file per resource."""

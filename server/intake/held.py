@@ -46,9 +46,13 @@ def held_rows(
     state: str = "held",
     limit: int = 100,
     before_id: int | None = None,
+    delivery_id: int | None = None,
 ) -> list[HeldResult]:
-    """Rows that are held (or were mended, or dropped), the newest first."""
-    found = stored.held_rows(session, sheet, state, limit, before_id)
+    """Rows that are held (or were mended, or dropped), the newest first.
+
+    Those of one delivery come in the order of its lines.
+    """
+    found = stored.held_rows(session, sheet, state, limit, before_id, delivery_id)
     return [_result(row, delivery) for row, delivery in found]
 
 

@@ -8,16 +8,27 @@ from server.storage.errors import NotFound
 
 
 def held_rows(
-    session: Session, sheet: str | None, state: str, limit: int, before_id: int | None
+    session: Session,
+    sheet: str | None,
+    state: str,
+    limit: int,
+    before_id: int | None,
+    delivery_id: int | None = None,
 ) -> list[tuple[HeldRow, Delivery]]:
-    """Held rows with the delivery that brought them, the newest first."""
+    """Held rows with the delivery that brought them, the newest first.
+
+    Those of one delivery come in the order of its lines.
+    """
     query = (
         select(HeldRow, Delivery)
         .join(Delivery, HeldRow.delivery_id == Delivery.id)
         .where(HeldRow.state == state)
-        .order_by(HeldRow.id.desc())
         .limit(limit)
     )
+    if delivery_id is None:
+        query = query.order_by(HeldRow.id.desc())
+    else:
+        query = query.where(HeldRow.delivery_id == delivery_id).order_by(HeldRow.id)
     if sheet is not None:
         query = query.where(HeldRow.sheet == sheet)
     if before_id is not None:

@@ -1,0 +1,1 @@
+"""The commands of the contract, one file for each part of the work at a terminal."""

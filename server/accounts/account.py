@@ -10,6 +10,7 @@ from server.accounts.errors import WrongPeriod
 from server.accounts.ledger import ledger, waterfall
 from server.accounts.metal import crop_account, made_account
 from server.accounts.results import Account, Charge, Crops, Energy, HouseAccount, Made
+from server.accounts.stock import StockBook
 from server.accounts.working import workings
 from server.science.constants import Metal
 from server.science.faraday import equivalent_kg_c
@@ -26,16 +27,28 @@ def metal_of(section: SectionPlan) -> Metal:
 
 
 def section_account(
-    session: Session, house: House, section_name: str, from_ms: int, to_ms: int
+    session: Session,
+    house: House,
+    section_name: str,
+    from_ms: int,
+    to_ms: int,
+    book: StockBook | None = None,
 ) -> Account:
-    """The books of one section over [from_ms, to_ms)."""
+    """The books of one section over [from_ms, to_ms).
+
+    A book of its stock over that time may be given, where it is at hand.
+    """
     if to_ms <= from_ms:
         raise WrongPeriod(from_ms, to_ms)
     section = house.section(section_name)
     metal = metal_of(section)
     passed = period_charge(session, section, from_ms, to_ms)
     crops = crop_account(session, section, metal, from_ms, to_ms)
-    made = made_account(session, section, metal, passed, crops.weighed_kg, from_ms, to_ms)
+    stock = [
+        (book or StockBook(session, section, metal, at_ms, at_ms)).at(at_ms)
+        for at_ms in (from_ms, to_ms)
+    ]
+    made = made_account(section, metal, passed, crops.weighed_kg, *stock)
     energy = energy_account(session, house, section, passed, made, from_ms, to_ms)
     charge = Charge(
         section_c=passed.section_c,

@@ -91,9 +91,14 @@ class ChargeRecord:
 
 def charge_record(session: Session, section_id: int, from_ms: int, to_ms: int) -> ChargeRecord:
     """The section's steps of current from the one that holds at `from_ms` to `to_ms`."""
-    rows = knots_between(session, section_id, from_ms, to_ms)
+    knots, days = knots_between(session, section_id, from_ms, to_ms)
+    day = np.searchsorted(days["day_ms"], knots["at_ms"], side="right") - 1
     return ChargeRecord(
-        rows["at_ms"], rows["amps"], rows["basis"], rows["charge_c"], rows["estimated_c"]
+        np.ascontiguousarray(knots["at_ms"]),
+        np.ascontiguousarray(knots["amps"]),
+        np.ascontiguousarray(knots["basis"]),
+        days["before_c"][day] + knots["since_day_c"],
+        days["estimated_before_c"][day] + knots["estimated_since_day_c"],
     )
 
 

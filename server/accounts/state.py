@@ -3,9 +3,9 @@
 from sqlalchemy.orm import Session
 
 from server.accounts.account import metal_of, section_account
-from server.accounts.metal import stock_at
 from server.accounts.periods import DAY_MS, day_of, shift_of
 from server.accounts.results import CellState, RoundState, SectionState
+from server.accounts.stock import StockBook, stock_at
 from server.accounts.trends import last_current
 from server.storage.current import effective_outages
 from server.storage.flag_rows import flags_touching
@@ -109,6 +109,10 @@ def _section_state(
     sample = last_current(session, section, now_ms)
     flags = flags_touching(session, now_ms, now_ms + 1, section.id, open_only=True)
     today = day_of(now_ms, house.time_zone)
+    # At midnight sharp the day has no length yet; its first millisecond stands for it.
+    to_ms = max(now_ms, today.from_ms + 1)
+    week_ms = to_ms - _RECENT_MS
+    book = StockBook(session, section, metal_of(section), week_ms, to_ms)
     return SectionState(
         name=section.name,
         process=section.process,
@@ -120,10 +124,8 @@ def _section_state(
         cells_in_service=sum(state == "in service" for state in states.values()),
         cells=terms.cells,
         round=round_state(session, house, section.name, now_ms),
-        recent=section_account(session, house, section.name, now_ms - _RECENT_MS, now_ms),
-        today=section_account(
-            session, house, section.name, today.from_ms, max(now_ms, today.from_ms + 1)
-        ),
+        recent=section_account(session, house, section.name, week_ms, to_ms, book),
+        today=section_account(session, house, section.name, today.from_ms, to_ms, book),
         open_flags=len(flags),
         acting_flags=sum(flag.tier == "act" for flag in flags),
     )

@@ -12,7 +12,7 @@ from server.accounts.energy import energy_between
 from server.accounts.periods import days_between
 from server.accounts.results import DayFigures
 from server.science.faraday import deposited_kg, specific_energy_from_volts_j_kg
-from server.storage.current import effective_outages, samples_between
+from server.storage.current import effective_outages, newest_sample
 from server.storage.lots import lot_figures
 from server.storage.plant import House, SectionPlan
 
@@ -85,9 +85,8 @@ def current_steps(
 
 
 def last_current(session: Session, section: SectionPlan, now_ms: int) -> tuple[int, float] | None:
-    """(at_ms, amps) of the newest logged current of the last four weeks."""
-    at_ms, amps = samples_between(session, section.id, now_ms - 28 * 86_400_000, now_ms + 1)
-    return (int(at_ms[-1]), float(amps[-1])) if len(at_ms) else None
+    """(at_ms, amps) of the newest logged current."""
+    return newest_sample(session, section.id, now_ms + 1)
 
 
 def section_outages(

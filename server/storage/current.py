@@ -9,6 +9,7 @@ from sqlalchemy.orm import Session
 from server.storage.direct import execute, fetch_columns, fetch_rows, insert_rows, marks
 
 _FAR_MS = 2**53
+_DAY_MS = 86_400_000
 _PREFIX = (
     "SELECT k.at_ms, k.amps, k.basis, d.before_c + k.since_day_c AS charge_c,"
     " d.estimated_before_c + k.estimated_since_day_c AS estimated_c"
@@ -73,6 +74,13 @@ def samples_beside(session: Session, section_id: int, from_ms: int, to_ms: int) 
     return _beside(session, "current_sample", "amps", section_id, from_ms, to_ms)
 
 
+def newest_sample(session: Session, section_id: int, before_ms: int) -> tuple[int, float] | None:
+    """(at_ms, amps) of the newest effective sample of current before a moment."""
+    at_ms, _ = samples_beside(session, section_id, before_ms, before_ms)
+    moments, amps = samples_between(session, section_id, at_ms, at_ms + 1)
+    return (int(moments[0]), float(amps[0])) if len(moments) else None
+
+
 def counters_beside(session: Session, section_id: int, from_ms: int, to_ms: int) -> tuple[int, int]:
     """Moments of the last counter reading before a stretch and the first one after it."""
     return _beside(session, "counter_sample", "counter_c", section_id, from_ms, to_ms)
@@ -133,25 +141,41 @@ def keep_bypasses(
     )
 
 
-def knots_between(session: Session, section_id: int, from_ms: int, to_ms: int) -> NDArray[np.void]:
-    """The step that holds at `from_ms` and those up to `to_ms`, with their running charge."""
+def knots_between(
+    session: Session, section_id: int, from_ms: int, to_ms: int
+) -> tuple[NDArray[np.void], NDArray[np.void]]:
+    """The step that holds at `from_ms` and those up to `to_ms`, and the days they lie in.
+
+    Steps: at_ms, amps, basis, since_day_c, estimated_since_day_c. Days: day_ms, before_c,
+    estimated_before_c.
+    """
     first = fetch_rows(
         session,
         "SELECT MAX(at_ms) FROM charge_knot WHERE section_id = ? AND at_ms <= ?",
         (section_id, from_ms),
     )[0][0]
-    return fetch_columns(
+    start_ms = from_ms if first is None else int(first)
+    knots = fetch_columns(
         session,
-        f"{_PREFIX} WHERE k.section_id = ? AND k.at_ms >= ? AND k.at_ms < ? ORDER BY k.at_ms",
-        (section_id, from_ms if first is None else first, to_ms),
+        "SELECT at_ms, amps, basis, since_day_c, estimated_since_day_c FROM charge_knot"
+        " WHERE section_id = ? AND at_ms >= ? AND at_ms < ? ORDER BY at_ms",
+        (section_id, start_ms, to_ms),
         (
             ("at_ms", "i8"),
             ("amps", "f8"),
             ("basis", "i8"),
-            ("charge_c", "f8"),
-            ("estimated_c", "f8"),
+            ("since_day_c", "f8"),
+            ("estimated_since_day_c", "f8"),
         ),
     )
+    days = fetch_columns(
+        session,
+        "SELECT day_ms, before_c, estimated_before_c FROM charge_day"
+        " WHERE section_id = ? AND day_ms >= ? AND day_ms < ? ORDER BY day_ms",
+        (section_id, start_ms - _DAY_MS, to_ms),
+        (("day_ms", "i8"), ("before_c", "f8"), ("estimated_before_c", "f8")),
+    )
+    return knots, days
 
 
 def prefix_rows(

@@ -85,7 +85,7 @@ def crops_pulled(session: Session, section_id: int, from_ms: int, to_ms: int) ->
 
 
 def crops_growing(session: Session, section_id: int, from_ms: int, to_ms: int) -> NDArray[np.void]:
-    """Crops that grew at some time in [from_ms, to_ms)."""
+    """Crops that grew at some time between two moments, by pull and cell."""
     return fetch_columns(
         session,
         f"SELECT {_CROP_COLUMNS} FROM crop WHERE section_id = ? AND pulled_ms > ?"

@@ -6,7 +6,7 @@ import pytest
 from server.accounts.account import metal_of
 from server.accounts.crops import Hung, hanging
 from server.accounts.lots import cell_crops, lot_results
-from server.accounts.metal import stock_at
+from server.accounts.stock import stock_at
 from server.science.faraday import deposited_kg
 from server.storage.plant import house
 from tests.factories import (

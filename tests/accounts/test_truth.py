@@ -9,8 +9,8 @@ import math
 import pytest
 
 from server.accounts.account import metal_of, section_account
-from server.accounts.metal import stock_at
 from server.accounts.results import Account
+from server.accounts.stock import stock_at
 from server.demo.truth import AccountTruth, account
 from tests.accounts.conftest import KeptHouse
 

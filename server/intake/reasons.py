@@ -80,5 +80,4 @@ ROW_REASONS: dict[str, str] = {
     "cells_beyond": "{column} names cell {found}; expected {expected}.",
     "order": "{column} “{found}” does not come in order; expected {expected}.",
     "no_values": "The row holds no measured value; expected {expected}.",
-    "not_text": "{column} “{found}” cannot be read; expected {expected}.",
 }

@@ -52,6 +52,8 @@ _MONTH_STARTS_DAYS: Whole = (
 _LAYOUTS_TRIED = 4
 """Layouts tried on the texts of one length, before the rest is read one by one."""
 
+_SHORTEST_TEXT = len("2026-03-01T02:00")
+_LONGEST_TEXT = len("2026-03-01T02:00:20.123456789+03:00")
 _TEXTS_REMEMBERED = 100_000
 
 
@@ -76,12 +78,15 @@ class TimeReader:
         millisecond are cut off.
         """
         moments = np.full(len(texts), MISSING, dtype=np.int64)
-        lengths = np.fromiter(map(len, texts), dtype=np.int64, count=len(texts))
-        for length in np.unique(lengths).tolist():
-            if length >= len("2026-03-01T02:00"):
-                places = np.flatnonzero(lengths == length)
-                some = texts if len(places) == len(texts) else [texts[i] for i in places.tolist()]
-                moments[places] = self._read_alike(some, length)
+        widths = set(map(len, texts))
+        for width in sorted(widths):
+            if not _SHORTEST_TEXT <= width <= _LONGEST_TEXT:
+                continue
+            if len(widths) == 1:
+                moments = self._read_alike(texts, width)
+            else:
+                places = [i for i, text in enumerate(texts) if len(text) == width]
+                moments[places] = self._read_alike([texts[i] for i in places], width)
         faults: dict[int, Fault] = {}
         for i in np.flatnonzero(moments == MISSING).tolist():
             found = self._read_one(texts[i])

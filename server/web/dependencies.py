@@ -14,6 +14,7 @@ from fastapi import Depends, Request
 from fastapi.security import APIKeyCookie, HTTPAuthorizationCredentials, HTTPBearer
 from sqlalchemy.orm import Session
 from starlette.datastructures import FormData
+from starlette.exceptions import HTTPException
 
 from server import clock
 from server.accounts.periods import shift_of
@@ -23,6 +24,7 @@ from server.storage.people import ROLES, Person, token_with_hash
 from server.storage.plant import House, tankhouse
 from server.web import csrf
 from server.web.errors import NotAllowed, SignInNeeded, is_api
+from server.web.i18n import gettext as _
 from server.web.render import Frame
 from server.web.security import token_hash
 from server.web.sign_in import SESSION_COOKIE, SignedIn, session_of
@@ -187,7 +189,11 @@ async def _field(request: Request, name: str) -> str | None:
 
 async def sent_form(request: Request) -> FormData:
     """The form that was sent, read once however often it is asked for."""
-    return await request.form(max_files=MOST_FILES, max_fields=MOST_FIELDS)
+    form = await request.form(max_files=MOST_FILES, max_fields=MOST_FIELDS)
+    if any("\0" in value for value in form.values() if isinstance(value, str)):
+        await form.close()
+        raise HTTPException(400, _("There is a NUL character in what was sent; take it out."))
+    return form
 
 
 def requires(role: str) -> Any:

@@ -79,6 +79,30 @@ def test_too_large_a_body_without_a_length_is_refused_as_it_grows(session, clien
     assert answer.json()["status"] == 413
 
 
+def test_a_nul_between_two_parts_of_a_body_is_found(session, client):
+    make_section(session)
+
+    answer = client.post(
+        "/api/v1/readings",
+        content=iter([b'{"readings": [{"section": "\\u00', b'00"}]}']),
+        headers={"content-type": "application/json"},
+    )
+
+    assert answer.status_code == 400
+
+
+def test_a_nul_in_a_form_with_files_is_found(session, client_of):
+    make_section(session)
+    client = client_of("operator")
+    del client.headers["x-csrf-token"]
+
+    answer = client.post(
+        "/api/v1/imports", files={"file": ("a.csv", b"a")}, data={"csrf_token": "a\0b"}
+    )
+
+    assert answer.status_code == 400
+
+
 def test_long_answers_are_compressed(anonymous):
     answer = anonymous.get("/api/v1/openapi.json", headers={"accept-encoding": "gzip"})
 

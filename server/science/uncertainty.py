@@ -4,7 +4,7 @@ import math
 
 import numpy as np
 from numpy.typing import ArrayLike
-from scipy import stats
+from scipy import special
 
 from server.science.arrays import Numbers, finite, not_negative
 from server.science.errors import OutOfRange, WrongShape
@@ -250,8 +250,8 @@ def coverage_factor(level: float = 0.95, degrees_of_freedom: float = math.inf) -
         raise OutOfRange("degrees_of_freedom", found=degrees_of_freedom, allowed="above zero")
     upper = 0.5 + level / 2.0
     if math.isinf(degrees_of_freedom):
-        return float(stats.norm.ppf(upper))
-    return float(stats.t.ppf(upper, degrees_of_freedom))
+        return float(special.ndtri(upper))
+    return float(special.stdtrit(degrees_of_freedom, upper))
 
 
 def expanded(standard_uncertainty: ArrayLike, coverage_factor: float = 2.0) -> Numbers:

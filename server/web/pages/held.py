@@ -25,6 +25,7 @@ from server.web.dependencies import (
 )
 from server.web.i18n import gettext as _
 from server.web.render import page
+from server.web.sentences import sentence_of
 from server.web.sheet_words import sheet_name
 from server.web.uploads import FormFields
 
@@ -104,7 +105,7 @@ def held_drop(
     try:
         drop(db, held_id, who.sender, why, now_ms)
     except Conflict as error:
-        fault = _("Say why it is dropped.") if not why.strip() else _sentence(error)
+        fault = _("Say why it is dropped.") if not why.strip() else sentence_of(error)
         return _page(request, who, db, Shown(), Tried(held_id, why=why, fault_of_dropping=fault))
     return RedirectResponse(f"{request.url_for('held').path}?done=dropped", 303)
 
@@ -130,7 +131,7 @@ def held_mend(
     try:
         result = mend(db, house, held_id, fields, who.sender, now_ms, site.settings, reason)
     except Conflict as error:
-        result = RecordResult(None, "held", _sentence(error))
+        result = RecordResult(None, "held", sentence_of(error))
     if result.status == "held":
         tried = Tried(held_id, fields, reason, fault_of_mending=result.reason or "")
         return _page(request, who, db, Shown(), tried)
@@ -168,8 +169,3 @@ def _done_words(done: str) -> str:
         "dropped": _("Dropped. What was sent stays on record with who dropped it, when and why."),
     }
     return words.get(done, "")
-
-
-def _sentence(error: Exception) -> str:
-    words = str(error)
-    return words[:1].upper() + words[1:] + "."

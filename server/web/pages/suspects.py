@@ -26,6 +26,7 @@ from server.web.dependencies import (
 from server.web.i18n import gettext as _
 from server.web.i18n import ngettext
 from server.web.render import page
+from server.web.sentences import sentence_of
 from server.web.sheet_words import source_name
 from server.web.uploads import FormFields
 
@@ -145,8 +146,7 @@ def _decide(
                 case _:
                     return {0: _("Nothing was changed: the form did not say what to do.")}
         except StorageError as error:
-            words = str(error)
-            faults[place] = words[:1].upper() + words[1:] + "."
+            faults[place] = sentence_of(error)
     return faults
 
 

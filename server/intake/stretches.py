@@ -20,4 +20,4 @@ def mark_moments(
     ends = np.append(np.flatnonzero(np.diff(at_ms) > GAP_MS), len(at_ms) - 1)
     starts = np.append(0, ends[:-1] + 1)
     for start, end in zip(starts.tolist(), ends.tolist(), strict=True):
-        mark(session, section_id, kind, int(at_ms[start]), int(at_ms[end]) + 1)
+        mark(session, section_id, kind, int(at_ms[start]), int(at_ms[end]) + 1, GAP_MS)

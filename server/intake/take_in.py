@@ -9,8 +9,8 @@ from typing import BinaryIO, cast
 
 from sqlalchemy.orm import Session
 
+from server.intake import delimited
 from server.intake.chunks import MEBIBYTE, Sheet
-from server.intake.delimited import BLOCK_BYTES, blocks
 from server.intake.kinds import ORDER
 from server.intake.preview import Progress, preview_file
 from server.intake.results import DeliveryResult, FileResult, RecordResult
@@ -247,8 +247,8 @@ def _sent_id(record: Mapping[str, object]) -> str | None:
 
 def _look_through(stream: BinaryIO, sheet: Sheet, limits: Limits) -> None:
     """Meet whatever would refuse a long file half-way, before anything of it is stored."""
-    if sheet.worksheet is None and sheet.size_bytes > BLOCK_BYTES:
-        for _ in blocks(stream, file=sheet.file, limits=limits):
+    if sheet.worksheet is None and sheet.size_bytes > delimited.BLOCK_BYTES:
+        for _ in delimited.blocks(stream, file=sheet.file, limits=limits):
             pass
 
 

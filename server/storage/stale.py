@@ -27,15 +27,20 @@ class StaleStretch:
     to_ms: int
 
 
-def mark(session: Session, section_id: int, kind: Kind, from_ms: int, to_ms: int) -> None:
-    """Note that records changed in [from_ms, to_ms); stretches that touch become one."""
+def mark(
+    session: Session, section_id: int, kind: Kind, from_ms: int, to_ms: int, join_ms: int = 0
+) -> None:
+    """Note that records changed in [from_ms, to_ms).
+
+    Stretches that touch, or are no more than `join_ms` apart, become one.
+    """
     if to_ms <= from_ms:
         raise ValueError(f"a stretch must have a length: from {from_ms} to {to_ms}")
     touching = fetch_rows(
         session,
         "SELECT id, from_ms, to_ms FROM stale"
         " WHERE section_id = ? AND kind = ? AND from_ms <= ? AND to_ms >= ?",
-        (section_id, kind, to_ms, from_ms),
+        (section_id, kind, to_ms + join_ms, from_ms - join_ms),
     )
     if len(touching) == 1 and touching[0][1] <= from_ms and touching[0][2] >= to_ms:
         return

@@ -40,6 +40,16 @@ def test_stretches_that_touch_become_one(session, from_ms, to_ms, expected):
     assert stretches(session) == expected
 
 
+def test_near_stretches_become_one_where_that_is_wanted(session):
+    section = make_section(session)
+    mark(session, section.id, "charge", 100, 200)
+
+    mark(session, section.id, "charge", 250, 300, join_ms=50)
+    mark(session, section.id, "charge", 351, 400, join_ms=50)
+
+    assert stretches(session) == [("charge", 100, 300), ("charge", 351, 400)]
+
+
 def test_a_stretch_that_closes_a_gap_joins_both_sides(session):
     section = make_section(session)
     mark(session, section.id, "readings", 0, 10)

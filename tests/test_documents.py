@@ -1,7 +1,9 @@
 """README.md and DEVELOPERS.md say what is true: settings, commands, examples, folders, links."""
 
+import os
 import re
 import subprocess
+import sys
 import tomllib
 from typing import Literal, get_args, get_origin
 
@@ -63,6 +65,24 @@ def test_the_readme_shows_every_sheet():
     from server.intake.columns import SHEETS
 
     assert set(examples()) == {"plant.toml"} | {f"{name}.csv" for name in SHEETS}
+
+
+def test_the_readmes_plant_and_sheets_go_in_whole(tmp_path):
+    for name, text in examples().items():
+        path = tmp_path / ("plant.toml" if name == "plant.toml" else f"sheets/{name}")
+        path.parent.mkdir(exist_ok=True)
+        path.write_text(text, encoding="utf-8")
+
+    for command in (["init", "--plant", "plant.toml"], ["import", "sheets"], ["check"]):
+        done = subprocess.run(
+            [sys.executable, "-m", "server", *command],
+            cwd=tmp_path,
+            env=os.environ | {"PYTHONPATH": str(ROOT)},
+            capture_output=True,
+            text=True,
+            check=False,
+        )
+        assert done.returncode == 0, done.stdout + done.stderr
 
 
 @pytest.mark.parametrize("document", [README, DEVELOPERS])

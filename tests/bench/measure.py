@@ -23,6 +23,9 @@ from server.web.sign_in import SESSION_COOKIE, cookie_text, signed_in
 KEY = "a key that signs the cookies of measurements alone"
 PERSON = "bench"
 
+_KEPT_ALIVE_S = 3
+"""A server closes a connection that was idle for five seconds."""
+
 
 @dataclass
 class Books:
@@ -45,13 +48,14 @@ class Books:
             "AMPLEDGER_PASSWORD_MEMORY_KIB": "64",
         }
 
-    def command(self, *arguments: str | Path) -> float:
-        """Run a command of the program; answers how long it took, in seconds."""
+    def command(self, *arguments: str | Path, typed: str = "") -> float:
+        """Run a command of the program, with what is typed; answers how long it took, in s."""
         started = time.perf_counter()
         done = subprocess.run(
             [sys.executable, "-m", "server", *map(str, arguments)],
             env=self.environment,
             cwd=Path(__file__).resolve().parents[2],
+            input=typed,
             capture_output=True,
             text=True,
             check=False,
@@ -90,6 +94,7 @@ class Server:
             "Content-Type": "application/json",
         }
         self._connection = http.client.HTTPConnection("127.0.0.1", self._port, timeout=60)
+        self._last_s = 0.0
         self._wait()
 
     def _wait(self) -> None:
@@ -108,11 +113,14 @@ class Server:
     def request(self, method: str, path: str, body: object = None) -> tuple[float, bytes]:
         """Send one request; answers how long it took, in ms, and the answer's body."""
         sent = None if body is None else json.dumps(body)
+        if time.monotonic() - self._last_s > _KEPT_ALIVE_S:
+            self._connection.close()
         started = time.perf_counter()
         self._connection.request(method, path, sent, self._headers)
         answer = self._connection.getresponse()
         content = answer.read()
         took_ms = (time.perf_counter() - started) * 1000
+        self._last_s = time.monotonic()
         if answer.status != 200:
             raise RuntimeError(f"{method} {path}: {answer.status} {content[:300]!r}")
         return took_ms, content

@@ -196,6 +196,34 @@ class Worklist(Answer):
 class HeldAnswer(Answer):
     """A row that could not be taken, word for word."""
 
+    model_config = ConfigDict(
+        json_schema_extra={
+            "example": {
+                "id": 17,
+                "sheet": "volts",
+                "source": "volts-2026-03-01.csv",
+                "sender": "Ines",
+                "received_at": "2026-03-01T12:04:10Z",
+                "line": 1204,
+                "column": "volts",
+                "found": "2,o31",
+                "expected": "cell voltage in V",
+                "reason": "volts “2,o31” is not a number; expected cell voltage in V.",
+                "fields": {
+                    "at": "2026-03-01T02:10",
+                    "section": "A",
+                    "cell": "7",
+                    "volts": "2,o31",
+                },
+                "raw": "2026-03-01T02:10;A;7;2,o31",
+                "state": "held",
+                "decided_at": None,
+                "decided_by": None,
+                "decided_why": None,
+            }
+        }
+    )
+
     id: int
     sheet: str
     source: str
@@ -226,6 +254,28 @@ class HeldRows(Answer):
 
 class SuspectAnswer(Answer):
     """A reading that can be read and not believed."""
+
+    model_config = ConfigDict(
+        json_schema_extra={
+            "example": {
+                "id": 5,
+                "section": "A",
+                "cell": 7,
+                "at": "2026-03-01T02:10:00Z",
+                "volts": 2031.0,
+                "suggested_volts": 2.031,
+                "reason": "A thousand times what the cell should show: a slipped unit?",
+                "found": "2031",
+                "expected": "about 2.03 V",
+                "source": "API",
+                "line": 7,
+                "state": "open",
+                "decided_at": None,
+                "decided_by": None,
+                "decided_why": None,
+            }
+        }
+    )
 
     id: int
     section: str

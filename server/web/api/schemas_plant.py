@@ -129,6 +129,27 @@ class Cells(Answer):
 class LotAnswer(Answer):
     """One lot with its own efficiency."""
 
+    model_config = ConfigDict(
+        json_schema_extra={
+            "example": {
+                "lot": "L-2026-0301-A1",
+                "cells": "1-12;15",
+                "weighed_at": "2026-03-01T15:20:00Z",
+                "started_at": "2026-02-22T13:00:00Z",
+                "pulled_at": "2026-03-01T13:00:00Z",
+                "cathodes": 260,
+                "net_kg": 17_180.0,
+                "starter_kg": 0.0,
+                "metal_kg": 17_180.0,
+                "theoretical_kg": 18_610.0,
+                "current_efficiency_pct": 92.32,
+                "u_current_efficiency_pct": 0.35,
+                "thickness_mm": 3.36,
+                "is_impossible": False,
+            }
+        }
+    )
+
     lot: str
     cells: str
     """Cell numbers in short, such as 1-12;15."""

@@ -157,7 +157,8 @@ class _Judgement:
     def slipped_rows(self, plan: SectionPlan) -> dict[int, Suspicion]:
         """Readings that were entered one line up or down, by place."""
         walk = np.empty(len(plan.cell_ids) + 1, np.int64)
-        walk[list(walking_order(plan.terms[-1]))] = np.arange(len(plan.cell_ids))
+        largest = max(plan.terms, key=lambda terms: (terms.cells, terms.from_ms))
+        walk[list(walking_order(largest))] = np.arange(len(plan.cell_ids))
         position = walk[self._readings.number]
         order = np.lexsort((position, self._rounds.group))
         doubts: dict[int, Suspicion] = {}

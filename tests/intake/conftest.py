@@ -157,11 +157,11 @@ def rounds(
     volts: Sequence[float],
     count: int,
     *,
-    first_ms: int = NOW_MS - 15 * 24 * HOUR_MS,
     every_ms: int = 8 * HOUR_MS,
     noise: float = 0.004,
 ) -> list[dict[str, object]]:
-    """Rounds of a section in order of time, each cell at its own level with a little noise."""
+    """Rounds of a section up to now, each cell at its own level with a little noise."""
+    first_ms = NOW_MS - count * every_ms
     return [
         {
             "at": iso(first_ms + number * every_ms + cell * 20_000),

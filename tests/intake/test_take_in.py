@@ -374,7 +374,7 @@ def test_a_preview_tells_all_and_stores_nothing(books):
     text = VOLTS + (
         "2024-03-05T06:00Z,EW1,1,2014\n"
         "2024-03-05T06:00Z,EW1,2,2.040\n"
-        "2024-03-05T06:00Z,EW9,3,2.040\n" + f"{iso(NOW_MS - 15 * 24 * HOUR_MS)},EW1,1,2.009\n"
+        "2024-03-05T06:00Z,EW9,3,2.040\n" + f"{iso(NOW_MS - 80 * HOUR_MS)},EW1,1,2.009\n"
     )
 
     preview = books.preview(text, "round.csv")
@@ -392,7 +392,7 @@ def test_a_preview_tells_all_and_stores_nothing(books):
     assert sheet.first_held[0].line == 4
     assert sheet.first_held[0].column == "section"
     assert sheet.first_suspect[0].suggested == "2.014"
-    assert (sheet.first_ms, sheet.last_ms) == (NOW_MS - 15 * 24 * HOUR_MS, NOW_MS - 6 * HOUR_MS)
+    assert (sheet.first_ms, sheet.last_ms) == (NOW_MS - 80 * HOUR_MS, NOW_MS - 6 * HOUR_MS)
     assert (books.contents(), books.rows("SELECT COUNT(*) FROM delivery")) == held
 
 

@@ -60,7 +60,6 @@ def upgrade() -> None:
         ),
         sa.PrimaryKeyConstraint("section_id", "day_ms", name=op.f("pk_energy_day")),
         sqlite_strict=True,
-        sqlite_with_rowid=False,
     )
     op.create_table(
         "stale",
@@ -92,7 +91,6 @@ def upgrade() -> None:
         sa.ForeignKeyConstraint(["section_id"], ["section.id"], name=op.f("fk_summary_section_id")),
         sa.PrimaryKeyConstraint("section_id", "level", "start_ms", name=op.f("pk_summary")),
         sqlite_strict=True,
-        sqlite_with_rowid=False,
     )
     op.create_table(
         "bypassed_cell",

@@ -118,12 +118,12 @@ def recharge_crops(session: Session, section: SectionPlan, from_ms: int, to_ms: 
     for start in range(0, len(ids), _LOTS_AT_ONCE):
         some = ids[start : start + _LOTS_AT_ONCE]
         by_lot: dict[int, list[tuple[int, int, int]]] = {}
-        for row in crops_of_lots(session, section.id, some):
+        for row in crops_of_lots(session, some):
             by_lot.setdefault(int(row["lot_id"]), []).append(
                 (int(row["cell_id"]), int(row["started_ms"]), int(row["cathodes"]))
             )
-        touched = lots_with_ids(session, section.id, some)
-        drop_crops_of_lots(session, section.id, some)
+        touched = lots_with_ids(session, some)
+        drop_crops_of_lots(session, section.id, touched)
         _write(session, section, [(lot, by_lot[lot.id]) for lot in touched])
 
 

@@ -1,5 +1,6 @@
 """Kilowatt-hours of a period: whole days from their sums, the edges by the hour."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -46,12 +47,30 @@ def energy_between(session: Session, section: SectionPlan, from_ms: int, to_ms: 
     for start_ms, end_ms in edges:
         if start_ms < end_ms:
             _add_hours(session, section, start_ms, end_ms, parts)
-    energy_j = None
-    if parts.cell_charge_c == 0:
-        energy_j = 0.0
-    elif parts.known_charge_c > 0:
-        energy_j = parts.known_j * (parts.cell_charge_c / parts.known_charge_c)
-    return EnergySum(energy_j, parts.cell_charge_c, parts.measured_charge_c)
+    return parts.sum()
+
+
+def energies_between(
+    session: Session, section: SectionPlan, edges_ms: Sequence[int]
+) -> list[EnergySum]:
+    """Energy of a section's cells between each two of these ascending moments.
+
+    For many short periods in a row, such as the days of a year: the hours are loaded once.
+    Edges that cut an hour are worked out one by one.
+    """
+    if any(edge_ms % HOUR_MS for edge_ms in edges_ms):
+        pairs = zip(edges_ms, edges_ms[1:], strict=False)
+        return [energy_between(session, section, *pair) for pair in pairs]
+    days = energy_hours(session, section.id, utc_day_ms(edges_ms[0]), edges_ms[-1])
+    hour_ms = np.array([day + hour * HOUR_MS for day, _ in days for hour in range(24)])
+    hours = np.concatenate([table for _, table in days]) if days else np.zeros((0, 4))
+    bounds = np.searchsorted(hour_ms, edges_ms)
+    sums = []
+    for start, end in zip(bounds, bounds[1:], strict=False):
+        parts = _Parts()
+        parts.add(hours[start:end, 1], hours[start:end, 2], hours[start:end, 3])
+        sums.append(parts.sum())
+    return sums
 
 
 class _Parts:
@@ -69,6 +88,15 @@ class _Parts:
         self.measured_charge_c += float(np.sum(measured_c))
         self.known_j += float(energy_j[is_known].sum())
         self.known_charge_c += float(cell_c[is_known].sum())
+
+    def sum(self) -> EnergySum:
+        """What was added, the unknown at the mean voltage of the known."""
+        energy_j = None
+        if self.cell_charge_c == 0:
+            energy_j = 0.0
+        elif self.known_charge_c > 0:
+            energy_j = self.known_j * (self.cell_charge_c / self.known_charge_c)
+        return EnergySum(energy_j, self.cell_charge_c, self.measured_charge_c)
 
 
 def _add_hours(

@@ -14,15 +14,15 @@ from server.storage.lots import (
     lot_figures,
     lots_with_ids,
 )
-from server.storage.plant import House, SectionPlan
+from server.storage.plant import House
 
 _AT_ONCE = 500
 
 
-def _lots_by_id(session: Session, section: SectionPlan, lot_ids: list[int]) -> dict[int, LotRow]:
+def _lots_by_id(session: Session, lot_ids: list[int]) -> dict[int, LotRow]:
     rows: dict[int, LotRow] = {}
     for start in range(0, len(lot_ids), _AT_ONCE):
-        for lot in lots_with_ids(session, section.id, lot_ids[start : start + _AT_ONCE]):
+        for lot in lots_with_ids(session, lot_ids[start : start + _AT_ONCE]):
             rows[lot.id] = lot
     return rows
 
@@ -40,8 +40,8 @@ def lot_results(
     section = house.section(section_name)
     metal = metal_of(section)
     figures = lot_figures(session, section.id, from_ms, to_ms)
-    lots = _lots_by_id(session, section, [f[0] for f in figures])
-    starts = _starts(session, section, list(lots))
+    lots = _lots_by_id(session, [f[0] for f in figures])
+    starts = _starts(session, list(lots))
     results = []
     for lot_id, pulled_ms, metal_kg, net_kg, charge_c, estimated_c, cathodes in reversed(figures):
         lot, terms = lots[lot_id], section.terms_at(pulled_ms)
@@ -76,11 +76,11 @@ def lot_results(
     return results
 
 
-def _starts(session: Session, section: SectionPlan, lot_ids: list[int]) -> dict[int, int]:
+def _starts(session: Session, lot_ids: list[int]) -> dict[int, int]:
     """When the oldest cathodes of each lot were hung."""
     starts: dict[int, int] = {}
     for start in range(0, len(lot_ids), _AT_ONCE):
-        crops = crops_of_lots(session, section.id, lot_ids[start : start + _AT_ONCE])
+        crops = crops_of_lots(session, lot_ids[start : start + _AT_ONCE])
         pairs = zip(crops["lot_id"].tolist(), crops["started_ms"].tolist(), strict=True)
         for lot_id, started_ms in pairs:
             starts[lot_id] = min(started_ms, starts.get(lot_id, started_ms))
@@ -94,7 +94,7 @@ def cell_crops(
     section = house.section(section_name)
     metal = metal_of(section)
     crops = crops_of_cell(session, section.cell_id(cell), from_ms, to_ms)
-    lots = _lots_by_id(session, section, crops["lot_id"].tolist())
+    lots = _lots_by_id(session, crops["lot_id"].tolist())
     results = []
     for crop in crops[::-1]:
         charge_c, metal_kg = float(crop["charge_c"]), float(crop["metal_kg"])

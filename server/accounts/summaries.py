@@ -1,5 +1,6 @@
 """Readings summed up by hour, shift and day, cell by cell."""
 
+import zlib
 from dataclasses import dataclass
 
 import numpy as np
@@ -96,7 +97,7 @@ def _summed(section: SectionPlan, series: Series, periods: list[Period]) -> list
                 cells_read=int(own.stop - own.start),
                 readings=int(packed["readings"][own].sum()),
                 sum_uv=int(packed["sum_uv"][own].sum()),
-                cells=table.tobytes(),
+                cells=zlib.compress(table.tobytes(), 1),
             )
         )
     return rows
@@ -104,4 +105,4 @@ def _summed(section: SectionPlan, series: Series, periods: list[Period]) -> list
 
 def unpacked(cells: bytes) -> NDArray[np.void]:
     """The cells of a packed summary, in the order of their numbers."""
-    return np.frombuffer(cells, CELL_SUMMARY)
+    return np.frombuffer(zlib.decompress(cells), CELL_SUMMARY)

@@ -8,7 +8,7 @@ from sqlalchemy.orm import Session
 
 from server.accounts.account import metal_of
 from server.accounts.charge import charge_record
-from server.accounts.energy import energy_between
+from server.accounts.energy import energies_between
 from server.accounts.periods import days_between
 from server.accounts.results import DayFigures
 from server.science.faraday import deposited_kg, specific_energy_from_volts_j_kg
@@ -43,10 +43,11 @@ def section_days(
     metal_kg = np.array([lot[2] for lot in lots])
     lot_c = np.array([lot[4] for lot in lots])
     bounds = np.searchsorted(pulled_ms, edges)
+    totals = energies_between(session, section, edges.tolist())
     figures = []
     for place, day in enumerate(days):
         own = slice(bounds[place], bounds[place + 1])
-        total = energy_between(session, section, day.from_ms, day.to_ms)
+        total = totals[place]
         section_c = float(charge_c[place + 1] - charge_c[place])
         guessed_c = float(estimated_c[place + 1] - estimated_c[place])
         received_c, pulled_kg = float(lot_c[own].sum()), float(metal_kg[own].sum())

@@ -55,10 +55,13 @@ class BypassedCell(Base):
 
 
 class EnergyDay(Base):
-    """A section's charge and energy over a UTC day, whole, by hour and by cell."""
+    """A section's charge and energy over a UTC day, whole, by hour and by cell.
+
+    Not clustered by its key: SQLite would give each packed row a page of its own.
+    """
 
     __tablename__ = "energy_day"
-    __table_args__ = (CLUSTERED,)
+    __table_args__ = (STRICT,)
 
     section_id: Mapped[int] = mapped_column(Whole, ForeignKey("section.id"), primary_key=True)
     day_ms: Mapped[int] = mapped_column(Whole, primary_key=True, autoincrement=False)
@@ -79,7 +82,7 @@ class Summary(Base):
     """What the readings of an hour, a shift or a day were, cell by cell."""
 
     __tablename__ = "summary"
-    __table_args__ = (CLUSTERED,)
+    __table_args__ = (STRICT,)
 
     section_id: Mapped[int] = mapped_column(Whole, ForeignKey("section.id"), primary_key=True)
     level: Mapped[str] = mapped_column(Words, primary_key=True)
@@ -92,7 +95,7 @@ class Summary(Base):
     readings: Mapped[int] = mapped_column(Whole)
     sum_uv: Mapped[int] = mapped_column(Whole)
     cells: Mapped[bytes] = mapped_column(Bytes)
-    """int64, cells x (readings, sum, least, greatest) in microvolts."""
+    """Packed by server/accounts/summaries.py, deflated."""
 
 
 class LatestReading(Base):

@@ -41,7 +41,7 @@ class LotRow:
 
 _LOT = (
     "SELECT id, name, cells, weighed_ms, pulled_ms, started_ms, cathodes_per_cell, net_kg,"
-    " starter_kg FROM lot l WHERE section_id = ? AND {where} AND is_void = 0 AND NOT EXISTS"
+    " starter_kg FROM lot l WHERE {where} AND is_void = 0 AND NOT EXISTS"
     " (SELECT 1 FROM lot n WHERE n.section_id = l.section_id AND n.name = l.name"
     " AND n.revision > l.revision) ORDER BY pulled_ms, id"
 )
@@ -53,24 +53,18 @@ def effective_lots(session: Session, section_id: int, from_ms: int, to_ms: int) 
         LotRow(*row)
         for row in fetch_rows(
             session,
-            _LOT.format(where="pulled_ms >= ? AND pulled_ms < ?"),
+            _LOT.format(where="section_id = ? AND pulled_ms >= ? AND pulled_ms < ?"),
             (section_id, from_ms, to_ms),
         )
     ]
 
 
-def lots_with_ids(session: Session, section_id: int, lot_ids: Sequence[int]) -> list[LotRow]:
+def lots_with_ids(session: Session, lot_ids: Sequence[int]) -> list[LotRow]:
     """These lots, by the time they were pulled."""
     if not lot_ids:
         return []
-    return [
-        LotRow(*row)
-        for row in fetch_rows(
-            session,
-            _LOT.format(where=f"id IN ({marks(len(lot_ids))})"),
-            (section_id, *lot_ids),
-        )
-    ]
+    where = f"id IN ({marks(len(lot_ids))})"
+    return [LotRow(*row) for row in fetch_rows(session, _LOT.format(where=where), tuple(lot_ids))]
 
 
 def crops_pulled(session: Session, section_id: int, from_ms: int, to_ms: int) -> NDArray[np.void]:
@@ -120,13 +114,13 @@ def crops_of_cell(session: Session, cell_id: int, from_ms: int, to_ms: int) -> N
     )
 
 
-def crops_of_lots(session: Session, section_id: int, lot_ids: Sequence[int]) -> NDArray[np.void]:
+def crops_of_lots(session: Session, lot_ids: Sequence[int]) -> NDArray[np.void]:
     """Crops of these lots, by lot and cell."""
     return fetch_columns(
         session,
-        f"SELECT {_CROP_COLUMNS} FROM crop WHERE section_id = ? AND lot_id IN"
-        f" ({marks(len(lot_ids))}) ORDER BY lot_id, cell_id",
-        (section_id, *lot_ids),
+        f"SELECT {_CROP_COLUMNS} FROM crop WHERE lot_id IN ({marks(len(lot_ids))})"
+        " ORDER BY lot_id, cell_id",
+        tuple(lot_ids),
         _CROP,
     )
 
@@ -141,13 +135,14 @@ def drop_crops_from(session: Session, section_id: int, pulled_ms: int) -> None:
         )
 
 
-def drop_crops_of_lots(session: Session, section_id: int, lot_ids: Sequence[int]) -> None:
+def drop_crops_of_lots(session: Session, section_id: int, lots: Sequence[LotRow]) -> None:
     """Forget the crops and figures of these lots."""
-    for table in ("crop", "lot_figure"):
+    for lot in lots:
+        execute(session, "DELETE FROM crop WHERE lot_id = ?", (lot.id,))
         execute(
             session,
-            f"DELETE FROM {table} WHERE section_id = ? AND lot_id IN ({marks(len(lot_ids))})",
-            (section_id, *lot_ids),
+            "DELETE FROM lot_figure WHERE section_id = ? AND pulled_ms = ? AND lot_id = ?",
+            (section_id, lot.pulled_ms, lot.id),
         )
 
 

@@ -51,4 +51,4 @@ def test_nothing_is_stored_or_held(session):
 
     faults(session, net_kg="-5")
 
-    assert not (session.new or session.dirty)
+    assert list(session.new) + list(session.dirty) == []

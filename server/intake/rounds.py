@@ -145,7 +145,7 @@ def _no_numbers(typed: TypedRound) -> dict[str, str]:
 
 def _dialect(typed: TypedRound) -> tuple[str, dict[str, str]]:
     """The decimal sign of the form; where both are typed, a fault at each of the fewer ones."""
-    texts = _texts(typed)
+    texts = {name: text for name, text in _texts(typed).items() if _NUMBER.fullmatch(text)}
     commas = [name for name, text in texts.items() if "," in text]
     points = [name for name, text in texts.items() if "." in text]
     if commas and points:

@@ -1,6 +1,6 @@
 # Each command makes ready what it needs by itself; see .ci/environment.
 .DEFAULT_GOAL := help
-.PHONY: help demo test bench lint format lock upgrade wheel wheelhouse clean
+.PHONY: help demo test bench pictures lint format lock upgrade wheel wheelhouse clean
 
 PYTHON := .venv/bin/python
 
@@ -8,6 +8,7 @@ help:
 	@echo "make demo        see it run: a made-up tankhouse on 127.0.0.1"
 	@echo "make test        see it pass its tests: both databases, published values, a real browser"
 	@echo "make bench       how fast it is, as ratios on this machine"
+	@echo "make pictures    every page of the demo, at a desk and on a phone, into build/pictures/"
 	@echo "make lint        formatter, linter and type checker"
 	@echo "make format      let the formatter decide"
 	@echo "make lock        the lock files anew, after pyproject.toml changed"
@@ -27,6 +28,11 @@ test:
 bench:
 	@.ci/environment dev
 	@$(PYTHON) -m tests.bench
+
+pictures:
+	@.ci/environment dev
+	@.ci/environment chromium
+	@$(PYTHON) -m tests.pictures $(if $(README),--readme)
 
 lint:
 	@.ci/environment dev

@@ -67,7 +67,12 @@ def checked(model: type[Model], content: Mapping[str, Any], file: str) -> Model:
 
 
 def _fault(model: type[BaseModel], content: Mapping[str, Any], error: dict[str, Any]) -> PlantFault:
-    place = tuple(error["loc"])
+    place, found = tuple(error["loc"]), error["input"]
+    while len(place) > 1 and isinstance(place[-1], int) and not _holds_tables(model, place[:-1]):
+        # One number of a pair is named with the whole pair.
+        place = place[:-1]
+        found = _at(content, place)
+        error = {**error, "type": "wrong"}
     cause = error.get("ctx", {}).get("error")
     if isinstance(cause, WrongTogether):
         return PlantFault(_key(content, (*place, cause.key)), _text(cause.found), cause.expected)
@@ -78,8 +83,7 @@ def _fault(model: type[BaseModel], content: Mapping[str, Any], error: dict[str, 
         expected = f"“{near[0]}”, if that is meant" if near else f"one of {', '.join(known)}"
         return PlantFault(key, "a key that is not known", expected)
     expected = str(cause) if isinstance(cause, ValueError) else _described(model, place)
-    found = "" if error["type"] == "missing" else _text(error["input"])
-    return PlantFault(key, found, expected)
+    return PlantFault(key, "" if error["type"] == "missing" else _text(found), expected)
 
 
 def _text(value: object) -> str:
@@ -110,6 +114,19 @@ def _below(within: Any, step: int | str) -> Any:
     if isinstance(step, int):
         return within[step] if isinstance(within, list) and step < len(within) else None
     return within.get(step) if isinstance(within, Mapping) else None
+
+
+def _at(content: Mapping[str, Any], place: Sequence[int | str]) -> Any:
+    within: Any = content
+    for step in place:
+        within = _below(within, step)
+    return within
+
+
+def _holds_tables(model: type[BaseModel], place: Sequence[int | str]) -> bool:
+    holder = _model_at(model, place[:-1])
+    field = holder.model_fields.get(str(place[-1]))
+    return field is None or _model_of(field.annotation) is not None
 
 
 def _model_at(model: type[BaseModel], place: Sequence[int | str]) -> type[BaseModel]:

@@ -31,12 +31,14 @@ def catch_up_fully(
     database: Database, settings: Settings, progress: Progress | None = None
 ) -> None:
     """Bring derived figures up to date, one block a transaction, so that it can be resumed."""
+    plant = None
     while True:
         with database.write() as session:
             block = next_block(session)
             if block is None:
                 return
-            bring_up_to_date(session, house(session), block, settings.max_hold_ms)
+            plant = plant or house(session)
+            bring_up_to_date(session, plant, block, settings.max_hold_ms)
             left = len(pending(session))
         if progress is not None:
             progress(left)

@@ -19,8 +19,7 @@ class CellSeries:
     at_ms: NDArray[np.int64]
     volts: NDArray[np.float64]
     suspect: NDArray[np.int64]
-    revision: NDArray[np.int64]
-    delivery_id: NDArray[np.int64]
+    """0 where the reading is believed, else the code of the doubt."""
 
 
 @dataclass(frozen=True)
@@ -47,9 +46,7 @@ def cell_series(
     """The readings of a cell in [from_ms, to_ms), as they count now or as they were known then."""
     cell_id = house.section(section_name).cell_id(cell)
     series = between(session, (cell_id,), from_ms, to_ms, known_ms)
-    return CellSeries(
-        series.at_ms, series.volts, series.suspect, series.revision, series.delivery_id
-    )
+    return CellSeries(series.at_ms, series.volts, series.suspect)
 
 
 def cell_events(

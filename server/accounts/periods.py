@@ -88,10 +88,18 @@ def shift_of(at_ms: int, house: House) -> Period:
 
 def shifts_between(from_ms: int, to_ms: int, house: House) -> list[Period]:
     """The shifts that touch a time, in order."""
-    periods = []
-    at_ms = from_ms
-    while at_ms < to_ms:
-        shift = shift_of(at_ms, house)
-        periods.append(shift)
-        at_ms = shift.to_ms
-    return periods
+    first = shift_of(from_ms, house)
+    starts = {first.from_ms: first.name}
+    day, last = local_date(from_ms, house.time_zone), local_date(to_ms, house.time_zone)
+    while day <= last + timedelta(days=1):
+        for minute, name in house.shifts_at(moment_ms(day, 0, house.time_zone)):
+            start_ms = moment_ms(day, minute, house.time_zone)
+            if start_ms > first.from_ms:
+                starts[start_ms] = name
+        day += timedelta(days=1)
+    edges = sorted(starts)
+    return [
+        Period(start, end, starts[start])
+        for start, end in zip(edges, edges[1:], strict=False)
+        if start < to_ms
+    ]

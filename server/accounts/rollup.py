@@ -26,7 +26,7 @@ _FAR_MS = 2**60
 _AROUND_MS = 2 * REACH_MS + DAY_MS
 """A changed reading bends days as far as it reaches, and these need what reaches into them."""
 
-BLOCK_MS = 92 * DAY_MS
+BLOCK_MS = 183 * DAY_MS
 """The longest stretch that is worked out in one transaction."""
 
 _ORDER: tuple[Kind, ...] = ("charge", "readings", "energy", "flags", "lots")
@@ -95,15 +95,28 @@ def _after_readings(
 ) -> None:
     """Voltages changed."""
     periods = periods_touching(house, block.from_ms, block.to_ms)
-    series = between(session, section.cell_ids, periods.from_ms, periods.to_ms)
-    rebuild_summaries(session, section, periods, series)
+    hand = _at_hand(
+        session,
+        section,
+        min(periods.from_ms, block.from_ms - _AROUND_MS),
+        max(periods.to_ms, block.to_ms + _AROUND_MS),
+    )
+    rebuild_summaries(session, section, periods, hand.series)
     keep_latest(session, section.cell_ids)
-    mark(session, section.id, "energy", block.from_ms, block.to_ms)
+    _after_both(session, section, block.from_ms, block.to_ms, hand)
+    settle(session, section.id, "energy", block.from_ms, block.to_ms)
 
 
-def _after_both(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
+def _after_both(
+    session: Session,
+    section: SectionPlan,
+    from_ms: int,
+    to_ms: int,
+    hand: _AtHand | None = None,
+) -> None:
     """What current and voltages give together: energy and the watch."""
-    hand = _at_hand(session, section, from_ms - _AROUND_MS, to_ms + _AROUND_MS)
+    if hand is None:
+        hand = _at_hand(session, section, from_ms - _AROUND_MS, to_ms + _AROUND_MS)
     _energy(session, section, *_bent_days(session, section, from_ms, to_ms, hand), hand)
     _watch(session, section, from_ms, to_ms, hand)
 

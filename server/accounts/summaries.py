@@ -55,52 +55,59 @@ def rebuild_summaries(
     An hour in which no cell was read twice is not kept: its readings are their own summary.
     """
     series = series.believed()
+    cell = np.searchsorted(np.array(section.cell_ids), series.cell_id)
     for level, own in (("hour", periods.hours), ("shift", periods.shifts), ("day", periods.days)):
-        rows = _summed(section, series, own)
-        if level == "hour":
-            rows = [row for row in rows if row.readings > row.cells_read]
+        rows = _summed(
+            len(section.cell_ids), cell, series, own, least_readings=1 + (level == "hour")
+        )
         names = {p.from_ms: p.name if level == "shift" else "" for p in own}
         keep_summaries(session, section.id, level, own[0].from_ms, own[-1].to_ms, rows, names)
 
 
-def _summed(section: SectionPlan, series: Series, periods: list[Period]) -> list[SummaryRow]:
-    """One row for each period in which a cell was read."""
+def _summed(
+    cells: int,
+    cell: NDArray[np.int64],
+    series: Series,
+    periods: list[Period],
+    least_readings: int,
+) -> list[SummaryRow]:
+    """One row for each period in which some cell was read as often as that.
+
+    The readings come by cell and time, so that those of one cell and period lie together.
+    """
     starts = np.array([p.from_ms for p in periods])
-    ends = np.array([p.to_ms for p in periods])
     place = np.searchsorted(starts, series.at_ms, side="right") - 1
-    inside = (place >= 0) & (series.at_ms < ends[np.maximum(place, 0)])
-    place, uv = place[inside], series.microvolts[inside]
-    if not len(uv):
+    inside = (place >= 0) & (series.at_ms < periods[-1].to_ms)
+    place, cell, uv = place[inside], cell[inside], series.microvolts[inside]
+    key = cell * len(periods) + place
+    firsts = np.flatnonzero(np.append(True, key[1:] != key[:-1])[: len(key)])
+    counts = np.diff(np.append(firsts, len(key)))
+    kept = np.zeros(len(periods), bool)
+    kept[place[firsts[counts >= least_readings]]] = True
+    if not kept.any():
         return []
-    cells = len(section.cell_ids)
-    cell = np.searchsorted(np.array(section.cell_ids), series.cell_id[inside])
-    key = place * cells + cell
-    order = np.argsort(key, kind="stable")
-    key, uv = key[order], uv[order]
-    firsts = np.flatnonzero(np.append(True, key[1:] != key[:-1]))
-    keys = key[firsts]
-    packed = np.zeros(len(keys), CELL_SUMMARY)
-    packed["readings"] = np.diff(np.append(firsts, len(key)))
+    rank = np.cumsum(kept) - 1
+    table = np.zeros((int(kept.sum()), cells), CELL_SUMMARY)
+    packed = np.zeros(len(firsts), CELL_SUMMARY)
+    packed["readings"] = counts
     packed["sum_uv"] = np.add.reduceat(uv, firsts)
     packed["least_uv"] = np.minimum.reduceat(uv, firsts)
     packed["greatest_uv"] = np.maximum.reduceat(uv, firsts)
-    of_period = keys // cells
-    rows = []
-    for period in np.unique(of_period).tolist():
-        own = slice(*np.searchsorted(of_period, [period, period + 1]))
-        table = np.zeros(cells, CELL_SUMMARY)
-        table[keys[own] % cells] = packed[own]
-        rows.append(
-            SummaryRow(
-                start_ms=periods[period].from_ms,
-                end_ms=periods[period].to_ms,
-                cells_read=int(own.stop - own.start),
-                readings=int(packed["readings"][own].sum()),
-                sum_uv=int(packed["sum_uv"][own].sum()),
-                cells=zlib.compress(table.tobytes(), 1),
-            )
+    shown = kept[place[firsts]]
+    table[rank[place[firsts[shown]]], cell[firsts[shown]]] = packed[shown]
+    cells_read = (table["readings"] > 0).sum(axis=1).tolist()
+    readings, sums = table["readings"].sum(axis=1).tolist(), table["sum_uv"].sum(axis=1).tolist()
+    return [
+        SummaryRow(
+            start_ms=periods[period].from_ms,
+            end_ms=periods[period].to_ms,
+            cells_read=cells_read[row],
+            readings=readings[row],
+            sum_uv=sums[row],
+            cells=zlib.compress(table[row].tobytes(), 1),
         )
-    return rows
+        for row, period in enumerate(np.flatnonzero(kept).tolist())
+    ]
 
 
 def unpacked(cells: bytes) -> NDArray[np.void]:

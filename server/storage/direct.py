@@ -29,8 +29,12 @@ def fetch_columns(
     session: Session, sql: str, parameters: Sequence[Any], columns: Sequence[tuple[str, str]]
 ) -> NDArray[np.void]:
     """Rows of a query as one structured array; `columns` gives each one's name and NumPy type."""
-    rows = fetch_rows(session, sql, parameters)
-    return np.fromiter(rows, dtype=list(columns), count=len(rows))
+    cursor, sql = _cursor(session, sql)
+    try:
+        cursor.execute(sql, parameters)
+        return np.fromiter(cursor, dtype=list(columns))
+    finally:
+        cursor.close()
 
 
 def insert_rows(session: Session, sql: str, rows: Iterable[Sequence[Any]]) -> int:

@@ -17,18 +17,8 @@ from server.storage.base import CLUSTERED, Base, Small, Whole
 from server.storage.direct import fetch_columns, fetch_rows, insert_rows, marks
 
 _UNKNOWN_UV = -(2**62)
-_COLUMNS = (
-    ("cell_id", "i8"),
-    ("at_ms", "i8"),
-    ("revision", "i8"),
-    ("microvolts", "i8"),
-    ("suspect", "i8"),
-    ("delivery_id", "i8"),
-)
-_SELECT = (
-    "SELECT cell_id, at_ms, revision, COALESCE(microvolts, "
-    f"{_UNKNOWN_UV}), suspect, delivery_id FROM reading "
-)
+_COLUMNS = (("cell_id", "i8"), ("at_ms", "i8"), ("microvolts", "i8"), ("suspect", "i8"))
+_SELECT = f"SELECT cell_id, at_ms, COALESCE(microvolts, {_UNKNOWN_UV}), suspect FROM reading "
 
 
 class Reading(Base):
@@ -55,8 +45,6 @@ class Series:
     at_ms: NDArray[np.int64]
     microvolts: NDArray[np.int64]
     suspect: NDArray[np.int64]
-    revision: NDArray[np.int64]
-    delivery_id: NDArray[np.int64]
 
     def __len__(self) -> int:
         return len(self.at_ms)
@@ -69,12 +57,7 @@ class Series:
     def where(self, keep: NDArray[np.bool_]) -> "Series":
         """The readings for which `keep` is true."""
         return Series(
-            self.cell_id[keep],
-            self.at_ms[keep],
-            self.microvolts[keep],
-            self.suspect[keep],
-            self.revision[keep],
-            self.delivery_id[keep],
+            self.cell_id[keep], self.at_ms[keep], self.microvolts[keep], self.suspect[keep]
         )
 
     def within(self, from_ms: int, to_ms: int) -> "Series":
@@ -87,12 +70,7 @@ class Series:
 
 
 def _series(rows: NDArray[np.void]) -> Series:
-    return Series(
-        *(
-            np.ascontiguousarray(rows[name])
-            for name in ("cell_id", "at_ms", "microvolts", "suspect", "revision", "delivery_id")
-        )
-    )
+    return Series(*(np.ascontiguousarray(rows[name]) for name, _ in _COLUMNS))
 
 
 def _effective(series: Series) -> Series:

@@ -6,6 +6,13 @@ from fastapi import FastAPI
 from server.web.app import MOST_SENT_MIB
 from tests.factories import make_section
 
+
+@pytest.fixture
+def database_url(sqlite_url):
+    """What is asked here does not depend on the database."""
+    return sqlite_url
+
+
 MIB = 1024 * 1024
 
 

@@ -11,6 +11,12 @@ from server.web.logs import set_up_logs
 from tests.factories import make_section
 
 
+@pytest.fixture
+def database_url(sqlite_url):
+    """What is asked here does not depend on the database."""
+    return sqlite_url
+
+
 @pytest.fixture(autouse=True)
 def _former_logs():
     root = logging.getLogger()

@@ -7,6 +7,13 @@ from server.web.moments import moment_of, span_of
 from server.web.refusals import Refused
 from tests.factories import make_house
 
+
+@pytest.fixture
+def database_url(sqlite_url):
+    """What is asked here does not depend on the database."""
+    return sqlite_url
+
+
 HOUR_MS = 3_600_000
 MARCH_MS = 1_772_323_200_000
 """2026-03-01T00:00Z."""

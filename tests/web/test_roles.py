@@ -11,6 +11,13 @@ from server.web import csrf
 from server.web.api.openapi import role_of
 from tests.factories import make_section
 
+
+@pytest.fixture
+def database_url(sqlite_url):
+    """What is asked here does not depend on the database."""
+    return sqlite_url
+
+
 OPEN_ROUTES = {
     "get_health",
     "get_health_live",

@@ -10,6 +10,13 @@ from server.web.api.sent import KIND_OF
 from server.web.api.sheet_schemas import EXAMPLES, component
 from tests.web.api.against_schema import faults
 
+
+@pytest.fixture
+def database_url(sqlite_url):
+    """What is asked here does not depend on the database."""
+    return sqlite_url
+
+
 CONTRACT = {
     "get": "readings flags worklist accounts sections cells held health metrics",
     "post": "readings current lots outages electrolyte finds",

@@ -2,9 +2,17 @@
 
 from html import unescape
 
+import pytest
+
 from server.web.pages.api import topics
 from tests.factories import make_section
 from tests.fixtures.browser import accessibility_faults
+
+
+@pytest.fixture
+def database_url(sqlite_url):
+    """What is asked here does not depend on the database."""
+    return sqlite_url
 
 
 def test_every_call_of_the_document_is_on_the_page(app, client, session):

@@ -8,7 +8,7 @@ from server.accounts.state import states_of_cells
 from server.storage.flag_rows import flags_touching
 from server.storage.flags import Flag
 from server.storage.latest import latest
-from server.storage.plant import House
+from server.storage.plant import House, SectionPlan
 from server.watch.deviations import deviations_now
 
 _TIERS = ("act", "look")
@@ -36,10 +36,22 @@ def section_floor(
 ) -> list[FloorCell]:
     """Every cell of a section as it stands now, by number."""
     section = house.section(section_name)
+    flags = flags_touching(session, now_ms, now_ms + 1, section.id, open_only=True)
+    return _floor(session, house, section, _first_flags(flags), now_ms)
+
+
+def house_floors(session: Session, house: House, now_ms: int) -> list[list[FloorCell]]:
+    """The floors of all sections, in their order."""
+    flags = _first_flags(flags_touching(session, now_ms, now_ms + 1, open_only=True))
+    return [_floor(session, house, section, flags, now_ms) for section in house.sections]
+
+
+def _floor(
+    session: Session, house: House, section: SectionPlan, flags: dict[int, str], now_ms: int
+) -> list[FloorCell]:
     _, states = states_of_cells(session, section, now_ms)
     newest = latest(session, section.cell_ids)
-    leaning = {d.cell: d for d in deviations_now(session, house, section_name, now_ms)}
-    flags = _first_flags(flags_touching(session, now_ms, now_ms + 1, section.id, open_only=True))
+    leaning = {d.cell: d for d in deviations_now(session, house, section.name, now_ms)}
     floor = []
     for number, state in states.items():
         cell_id = section.cell_id(number)

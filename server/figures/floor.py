@@ -15,10 +15,12 @@ WIDE_LINE = 50
 """Most cells on one line of a drawing for a desk; a longer row is folded."""
 NARROW_LINE = 12
 """The same for a phone, where each cell must be wide enough for a finger."""
+SMALL_LINE = 15
+"""The same for a small drawing of a whole section, in which no cell is pointed at."""
 
 _WIDTH = 1004.0
 _MOST_PITCH = 64.0
-_NARROW_PITCH = 28.0
+_FIXED_PITCH = {NARROW_LINE: 28.0, SMALL_LINE: 24.0}
 _MARGIN = 28.0
 _LINE_HEIGHT = 76.0
 _FOOT = 62.0
@@ -68,6 +70,21 @@ class Floor:
     path: str
     needles: tuple[Needle, ...]
 
+    @property
+    def calm(self) -> str:
+        """All needles without a flag as one outline."""
+        return "".join(n.line for n in self.needles if not n.direction and not n.is_dotted)
+
+    @property
+    def unread(self) -> str:
+        """All dotted ones without a flag as one outline."""
+        return "".join(n.line for n in self.needles if not n.direction and n.is_dotted)
+
+    @property
+    def flagged(self) -> list[Needle]:
+        """Those with a flag."""
+        return [needle for needle in self.needles if needle.direction]
+
 
 def lean(times_noise: float) -> float:
     """Angle of a needle from upright, to the right for a cell that reads high."""
@@ -85,7 +102,7 @@ def floor(cells: Sequence[FloorCell], rows: int, longest_line: int = WIDE_LINE) 
     most = max((len(line) for line in lines), default=0)
     if not most:
         return Floor(0.0, 0.0, 0.0, 0.0, "", ())
-    pitch = _NARROW_PITCH if longest_line <= NARROW_LINE else min(_WIDTH / most, _MOST_PITCH)
+    pitch = _FIXED_PITCH.get(longest_line) or min(_WIDTH / most, _MOST_PITCH)
     needles: list[Needle] = []
     for place, line in enumerate(lines):
         foot = _FOOT + place * _LINE_HEIGHT

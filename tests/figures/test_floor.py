@@ -87,5 +87,12 @@ def test_numbers_do_not_run_into_the_one_of_a_flagged_cell():
     assert {1, 20, 30, 60} <= set(numbered)
 
 
+def test_what_is_calm_is_one_outline_and_what_is_flagged_stands_apart():
+    drawn = floor(cells(6, c2={"flag_kind": "short"}, c3={"times_noise": None}), rows=1)
+
+    assert (drawn.calm.count("M"), drawn.unread.count("M")) == (4, 1)
+    assert [needle.cell.cell for needle in drawn.flagged] == [2]
+
+
 def test_a_section_without_cells_is_an_empty_drawing():
     assert floor([], rows=2).needles == ()

@@ -32,6 +32,8 @@ class Trend:
     figure: Figure | None
     """None where there is nothing to draw."""
     sentence: str
+    note: str = ""
+    """The target in words, which would hide the line at the width of these figures."""
 
 
 def section_trends(
@@ -116,9 +118,10 @@ def _of_days(
     middles = np.array([(day.from_ms + day.to_ms) // 2 for day in days], np.int64)
     known = np.isfinite(values)
     line = Line(axis.quantity, middles[known], values[known], gap_ms=_GAP_MS)
-    targets = [target] if target else []
+    targets = [Target(target.value, "")] if target else []
     figure = trend(window, axis, [line], targets=targets, outages=outages) if known.any() else None
-    return Trend(key, axis.quantity, figure, _sentence(axis, values, target))
+    note = target.words if target else ""
+    return Trend(key, axis.quantity, figure, _sentence(axis, values, target), note)
 
 
 def _mass(days: Sequence[DayFigures], window: Window, outages: Sequence[Outage]) -> Trend:
@@ -141,7 +144,7 @@ def _current(steps: CurrentSteps, window: Window, outages: Sequence[Outage]) -> 
     at_ms = np.maximum(steps.at_ms, window.from_ms)
     line = Line(axis.quantity, at_ms, values, shape="steps")
     is_known = bool(np.isfinite(values).any())
-    figure = trend(window, axis, [line], outages=outages, height=200) if is_known else None
+    figure = trend(window, axis, [line], outages=outages) if is_known else None
     return Trend("current", axis.quantity, figure, _sentence(axis, values))
 
 

@@ -6,12 +6,12 @@ from fastapi import APIRouter, Request
 from fastapi.responses import HTMLResponse
 from sqlalchemy.orm import Session
 
-from server.accounts.floor import section_floor
+from server.accounts.floor import house_floors
 from server.accounts.standing import Standing, section_standing
-from server.figures.floor import NARROW_LINE, Floor, floor
+from server.figures.floor import SMALL_LINE, Floor, floor
 from server.storage.plant import House
 from server.web.dependencies import DbSession, Now, Reader, ThisHouse, ThisSite
-from server.web.pages.floor_words import floor_sentence, needle_words
+from server.web.pages.floor_words import floor_sentence
 from server.web.pages.words import process_words
 from server.web.render import page
 
@@ -20,11 +20,10 @@ router = APIRouter(include_in_schema=False)
 
 @dataclass(frozen=True)
 class SectionOnFloor:
-    """One section: how it stands, and its floor drawn for a desk and for a phone."""
+    """One section: how it stands, and its floor in small."""
 
     standing: Standing
-    wide: Floor
-    narrow: Floor
+    drawing: Floor
     sentence: str
 
 
@@ -33,20 +32,17 @@ def sections(
     request: Request, _who: Reader, db: DbSession, house: ThisHouse, now_ms: Now, site: ThisSite
 ) -> HTMLResponse:
     """Show the floor of every section."""
-    max_hold_ms = site.settings.max_hold_ms
-    found = [_drawn(db, house, plan.name, now_ms, max_hold_ms) for plan in house.sections]
-    words = {"needle_words": needle_words, "process_words": process_words}
-    return page(request, "sections.html", {"sections": found, **words})
+    found = _drawn(db, house, now_ms, site.settings.max_hold_ms)
+    return page(request, "sections.html", {"sections": found, "process_words": process_words})
 
 
-def _drawn(
-    session: Session, house: House, name: str, now_ms: int, max_hold_ms: int
-) -> SectionOnFloor:
-    cells = section_floor(session, house, name, now_ms)
-    rows = house.section(name).terms_at(now_ms).rows
-    return SectionOnFloor(
-        standing=section_standing(session, house, name, now_ms, max_hold_ms),
-        wide=floor(cells, rows),
-        narrow=floor(cells, rows, NARROW_LINE),
-        sentence=floor_sentence(cells),
-    )
+def _drawn(session: Session, house: House, now_ms: int, max_hold_ms: int) -> list[SectionOnFloor]:
+    floors = house_floors(session, house, now_ms)
+    return [
+        SectionOnFloor(
+            standing=section_standing(session, house, plan.name, now_ms, max_hold_ms),
+            drawing=floor(cells, plan.terms_at(now_ms).rows, SMALL_LINE),
+            sentence=floor_sentence(cells),
+        )
+        for plan, cells in zip(house.sections, floors, strict=True)
+    ]

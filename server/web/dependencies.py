@@ -45,7 +45,7 @@ _bearer = HTTPBearer(
 _cookie = APIKeyCookie(
     name=SESSION_COOKIE,
     auto_error=False,
-    scheme_name="signed-in browser",
+    scheme_name="signed-in",
     description="The cookie of someone who is signed in; what writes also needs the header "
     f"{csrf.HEADER}.",
 )

@@ -65,9 +65,10 @@ def _as_fault(found: Mapping[str, Any]) -> Fault:
     expected = str(context.get("expected", "")) or ", ".join(
         f"{name} {context[name]}" for name in ("ge", "gt", "le", "lt") if name in context
     )
+    places = [str(step) for step in found["loc"]]
     return fault(
-        ".".join(str(step) for step in found["loc"]),
-        str(found["msg"]),
+        ".".join(places),
+        f"{places[-1]}: {found['msg']}" if places else str(found["msg"]),
         given if isinstance(given, str | int | float | bool) else "",
         expected,
     )

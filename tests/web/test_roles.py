@@ -21,6 +21,8 @@ def database_url(sqlite_url):
 OPEN_ROUTES = {
     "get_health",
     "get_health_live",
+    "head_health",
+    "head_health_live",
     "openapi",
     "static",
     "sign_in",

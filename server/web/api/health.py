@@ -12,12 +12,14 @@ from server.web.dependencies import ThisSite
 router = APIRouter(prefix=PREFIX, tags=["server"])
 
 
+@router.head("/health/live", include_in_schema=False, name="head_health_live")
 @router.get("/health/live", summary="Whether the server lives", status_code=204)
 def get_health_live() -> Response:
     """Answer at once, whatever the database does."""
     return Response(status_code=204)
 
 
+@router.head("/health", include_in_schema=False, name="head_health")
 @router.get(
     "/health",
     summary="Whether the server can work",

@@ -68,7 +68,6 @@ def get_held_row(db: DbSession, held_id: RowId) -> HeldAnswer:
     "/held/{held_id}/mend",
     summary="Mend a row and take it in",
     responses=problems(404, 409),
-    response_model_exclude_none=True,
 )
 def post_held_mend(
     held_id: RowId,

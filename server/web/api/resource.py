@@ -12,6 +12,7 @@ PREFIX = "/api/v1"
 PROBLEM_SCHEMA = "Problem"
 
 _PROBLEMS = {
+    400: "What was sent is not JSON or not a form, or holds a NUL character.",
     401: "Nobody is signed in, and no good token was sent.",
     403: "The role of whoever asks does not go so far.",
     404: "There is no such thing in the books.",
@@ -19,7 +20,7 @@ _PROBLEMS = {
     413: "More was sent than is taken at once.",
     422: "Something is missing or cannot be read; `errors` tells what, field by field.",
 }
-_COMMON = (401, 403, 422)
+_COMMON = (400, 401, 403, 422)
 
 
 def resource(tag: str) -> APIRouter:

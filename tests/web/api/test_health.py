@@ -26,6 +26,12 @@ def test_health_needs_no_token_and_no_tankhouse(anonymous):
     assert found["version"] == __version__
 
 
+def test_health_can_be_asked_for_without_a_body(anonymous):
+    answer = anonymous.head("/api/v1/health")
+
+    assert (answer.status_code, answer.content) == (200, b"")
+
+
 def test_the_backlog_is_told(session, anonymous):
     section = make_section(session)
     mark(session, section.id, "charge", 0, 1000)

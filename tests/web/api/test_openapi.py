@@ -67,6 +67,12 @@ def test_every_refusal_is_a_problem(found):
                 assert list(answer["content"]) == ["application/problem+json"], (path, method)
 
 
+def test_every_component_has_a_name_that_may_be_one(found):
+    names = [name for kind in found["components"].values() for name in kind]
+
+    assert [name for name in names if not re.fullmatch(r"[A-Za-z0-9._-]+", name)] == []
+
+
 def test_every_reference_leads_somewhere(found):
     names = set(re.findall(r'"#/components/schemas/([^"]+)"', json.dumps(found)))
 

@@ -231,7 +231,6 @@ def series(volts, suspect=()) -> CellSeries:
     doubts = np.zeros(count, np.int64)
     doubts[list(suspect)] = 1
     at_ms = np.arange(count, dtype=np.int64) * HOUR_MS
-    nothing = np.zeros(count, np.int64)
     return CellSeries(at_ms, np.asarray(volts, float), doubts)
 
 

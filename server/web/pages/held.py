@@ -144,6 +144,8 @@ def _page(request: Request, who: Who, session: Session, shown: Shown, tried: Tri
     if tried.row is not None and all(row.id != tried.row for row in rows):
         rows.insert(0, held_row(session, tried.row))
     counts = held_counts(session)
+    refusal = tried.fault_of_dropping or tried.fault_of_mending
+    is_decided = any(row.id == tried.row and row.state != "held" for row in rows)
     context = {
         "rows": rows,
         "columns": {name: kind.columns for name, kind in SHEETS.items()},
@@ -155,9 +157,9 @@ def _page(request: Request, who: Who, session: Session, shown: Shown, tried: Tri
         "may_decide": who.may("superintendent") and shown.state == "held",
         "sheet_name": sheet_name,
         "done": _done_words(shown.done),
+        "too_late": refusal if is_decided else "",
     }
-    is_refused = tried.fault or tried.fault_of_dropping or tried.fault_of_mending
-    return page(request, "held.html", context, status_code=422 if is_refused else 200)
+    return page(request, "held.html", context, status_code=422 if refusal or tried.fault else 200)
 
 
 def _done_words(done: str) -> str:

@@ -173,6 +173,7 @@ def test_a_fault_in_the_figures_refuses_no_record(section, writing, app, client,
     assert app.state.site.metrics.catch_up_failures._value.get() == 1
 
 
+@pytest.mark.slow
 def test_many_who_write_at_once_all_get_their_turn(section, writing, app, session, serve):
     from concurrent.futures import ThreadPoolExecutor
 

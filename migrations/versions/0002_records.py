@@ -224,16 +224,12 @@ def upgrade() -> None:
     )
     op.create_table(
         "reading",
-        sa.Column("cell_id", WHOLE, nullable=False),
+        sa.Column("cell_id", WHOLE, autoincrement=False, nullable=False),
         sa.Column("at_ms", WHOLE, autoincrement=False, nullable=False),
         sa.Column("revision", SMALL, autoincrement=False, nullable=False),
         sa.Column("microvolts", WHOLE, nullable=True),
         sa.Column("suspect", SMALL, nullable=False),
         sa.Column("delivery_id", WHOLE, nullable=False),
-        sa.ForeignKeyConstraint(["cell_id"], ["cell.id"], name=op.f("fk_reading_cell_id")),
-        sa.ForeignKeyConstraint(
-            ["delivery_id"], ["delivery.id"], name=op.f("fk_reading_delivery_id")
-        ),
         sa.PrimaryKeyConstraint("cell_id", "at_ms", "revision", name=op.f("pk_reading")),
         sqlite_strict=True,
         sqlite_with_rowid=False,

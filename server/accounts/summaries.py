@@ -1,6 +1,5 @@
 """Readings summed up by hour, shift and day, cell by cell."""
 
-import zlib
 from dataclasses import dataclass
 
 import numpy as np
@@ -17,31 +16,34 @@ CELL_SUMMARY = np.dtype(
 )
 """How one cell lies in a packed summary; least and greatest are 0 where nothing was read."""
 
+_WHOLE, _SINGLE = b"w", b"s"
+_UNREAD = -(2**31)
+
 
 @dataclass(frozen=True)
 class Summed:
     """The hours, shifts and days that touch a stretch of time, and the time they cover."""
 
-    hours: list[Period]
+    hours: tuple[int, int]
+    """Start of the first hour and end of the last."""
     shifts: list[Period]
     days: list[Period]
 
     @property
     def from_ms(self) -> int:
         """Start of the earliest of them."""
-        return min(p[0].from_ms for p in (self.hours, self.shifts, self.days))
+        return min(self.hours[0], self.shifts[0].from_ms, self.days[0].from_ms)
 
     @property
     def to_ms(self) -> int:
         """End of the latest of them."""
-        return max(p[-1].to_ms for p in (self.hours, self.shifts, self.days))
+        return max(self.hours[1], self.shifts[-1].to_ms, self.days[-1].to_ms)
 
 
 def periods_touching(house: House, from_ms: int, to_ms: int) -> Summed:
     """The hours of UTC and the plant's own shifts and days that touch [from_ms, to_ms)."""
-    hours = range(utc_hour_ms(from_ms), utc_hour_ms(to_ms - 1) + 1, HOUR_MS)
     return Summed(
-        hours=[Period(start, start + HOUR_MS) for start in hours],
+        hours=(utc_hour_ms(from_ms), utc_hour_ms(to_ms - 1) + HOUR_MS),
         shifts=shifts_between(from_ms, to_ms, house),
         days=days_between(from_ms, to_ms, house.time_zone),
     )
@@ -56,33 +58,41 @@ def rebuild_summaries(
     """
     series = series.believed()
     cell = np.searchsorted(np.array(section.cell_ids), series.cell_id)
-    for level, own in (("hour", periods.hours), ("shift", periods.shifts), ("day", periods.days)):
-        rows = _summed(
-            len(section.cell_ids), cell, series, own, least_readings=1 + (level == "hour")
-        )
-        names = {p.from_ms: p.name if level == "shift" else "" for p in own}
-        keep_summaries(session, section.id, level, own[0].from_ms, own[-1].to_ms, rows, names)
+    hour_ms = np.arange(*periods.hours, HOUR_MS)
+    levels = (
+        ("hour", hour_ms, hour_ms + HOUR_MS, [""] * len(hour_ms), 2),
+        ("shift", *_edges(periods.shifts), [p.name for p in periods.shifts], 1),
+        ("day", *_edges(periods.days), [""] * len(periods.days), 1),
+    )
+    for level, starts, ends, names, least_readings in levels:
+        rows = _summed(len(section.cell_ids), cell, series, starts, ends, names, least_readings)
+        keep_summaries(session, section.id, level, int(starts[0]), int(ends[-1]), rows)
+
+
+def _edges(periods: list[Period]) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    return np.array([p.from_ms for p in periods]), np.array([p.to_ms for p in periods])
 
 
 def _summed(
     cells: int,
     cell: NDArray[np.int64],
     series: Series,
-    periods: list[Period],
+    starts: NDArray[np.int64],
+    ends: NDArray[np.int64],
+    names: list[str],
     least_readings: int,
 ) -> list[SummaryRow]:
     """One row for each period in which some cell was read as often as that.
 
     The readings come by cell and time, so that those of one cell and period lie together.
     """
-    starts = np.array([p.from_ms for p in periods])
     place = np.searchsorted(starts, series.at_ms, side="right") - 1
-    inside = (place >= 0) & (series.at_ms < periods[-1].to_ms)
+    inside = (place >= 0) & (series.at_ms < ends[-1])
     place, cell, uv = place[inside], cell[inside], series.microvolts[inside]
-    key = cell * len(periods) + place
+    key = cell * len(starts) + place
     firsts = np.flatnonzero(np.append(True, key[1:] != key[:-1])[: len(key)])
     counts = np.diff(np.append(firsts, len(key)))
-    kept = np.zeros(len(periods), bool)
+    kept = np.zeros(len(starts), bool)
     kept[place[firsts[counts >= least_readings]]] = True
     if not kept.any():
         return []
@@ -97,19 +107,37 @@ def _summed(
     table[rank[place[firsts[shown]]], cell[firsts[shown]]] = packed[shown]
     cells_read = (table["readings"] > 0).sum(axis=1).tolist()
     readings, sums = table["readings"].sum(axis=1).tolist(), table["sum_uv"].sum(axis=1).tolist()
+    is_single = np.all(table["readings"] <= 1, axis=1).tolist()
     return [
         SummaryRow(
-            start_ms=periods[period].from_ms,
-            end_ms=periods[period].to_ms,
+            start_ms=int(starts[period]),
+            end_ms=int(ends[period]),
+            name=names[period],
             cells_read=cells_read[row],
             readings=readings[row],
             sum_uv=sums[row],
-            cells=zlib.compress(table[row].tobytes(), 1),
+            cells=_packed(table[row], is_single[row]),
         )
         for row, period in enumerate(np.flatnonzero(kept).tolist())
     ]
 
 
+def _packed(table: NDArray[np.void], is_single: bool) -> bytes:
+    """The cells of a summary as bytes: the readings alone where no cell was read twice."""
+    if not is_single:
+        return _WHOLE + table.tobytes()
+    return (
+        _SINGLE + np.where(table["readings"] > 0, table["sum_uv"], _UNREAD).astype("<i4").tobytes()
+    )
+
+
 def unpacked(cells: bytes) -> NDArray[np.void]:
     """The cells of a packed summary, in the order of their numbers."""
-    return np.frombuffer(zlib.decompress(cells), CELL_SUMMARY)
+    if cells[:1] == _WHOLE:
+        return np.frombuffer(cells, CELL_SUMMARY, offset=1)
+    read_uv = np.frombuffer(cells, "<i4", offset=1)
+    table = np.zeros(len(read_uv), CELL_SUMMARY)
+    for name in ("least_uv", "greatest_uv", "sum_uv"):
+        table[name] = np.where(read_uv == _UNREAD, 0, read_uv)
+    table["readings"] = read_uv != _UNREAD
+    return table

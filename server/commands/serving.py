@@ -5,12 +5,10 @@ import socket
 from typing import Annotated
 
 import typer
-import uvicorn
 
 from server.commands.terminal import REFUSED, books, fail, settings
 from server.settings import Settings
 from server.storage.database import Database
-from server.web.app import create_app
 
 Host = Annotated[str, typer.Option(help="Address to serve on; leave it and put a proxy in front.")]
 Port = Annotated[int, typer.Option(min=1, max=65_535, help="Port to serve on.")]
@@ -39,6 +37,11 @@ def serve_books(
     """Serve books that are there."""
     if not is_free(host, port):
         fail(f"{host}:{port} is taken, or cannot be served on; choose another --port", REFUSED)
+    # Loaded here, so that the commands that serve nothing start without all of the web.
+    import uvicorn
+
+    from server.web.app import create_app
+
     uvicorn.run(
         create_app(chosen, database),
         host=host,

@@ -4,7 +4,6 @@ import math
 
 import numpy as np
 from numpy.typing import ArrayLike
-from scipy import special
 
 from server.science.arrays import Numbers, finite, not_negative
 from server.science.errors import OutOfRange, WrongShape
@@ -249,6 +248,9 @@ def coverage_factor(level: float = 0.95, degrees_of_freedom: float = math.inf) -
     if not degrees_of_freedom > 0.0:
         raise OutOfRange("degrees_of_freedom", found=degrees_of_freedom, allowed="above zero")
     upper = 0.5 + level / 2.0
+    # Loaded here: it takes a good part of the time in which a command starts.
+    from scipy import special
+
     if math.isinf(degrees_of_freedom):
         return float(special.ndtri(upper))
     return float(special.stdtrit(degrees_of_freedom, upper))

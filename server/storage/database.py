@@ -16,6 +16,8 @@ from server.storage.turns import take_turn
 
 _WRITER_CACHE_KIB = 65_536
 _READER_CACHE_KIB = 8_192
+_CHECKPOINT_PAGES = 8_192
+"""Pages of the log after which they are copied into the file: 32 MiB."""
 
 
 class Database:
@@ -55,6 +57,7 @@ class Database:
                 "foreign_keys=ON",
                 "busy_timeout=30000",
                 f"cache_size=-{cache_kib}",
+                f"wal_autocheckpoint={_CHECKPOINT_PAGES}",
                 "temp_store=MEMORY",
             ):
                 connection.execute(f"PRAGMA {pragma}").close()

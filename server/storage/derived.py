@@ -95,7 +95,7 @@ class Summary(Base):
     readings: Mapped[int] = mapped_column(Whole)
     sum_uv: Mapped[int] = mapped_column(Whole)
     cells: Mapped[bytes] = mapped_column(Bytes)
-    """Packed by server/accounts/summaries.py, deflated."""
+    """Packed by server/accounts/summaries.py."""
 
 
 class LatestReading(Base):

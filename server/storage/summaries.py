@@ -1,6 +1,6 @@
 """Summaries of readings and days of energy, written and read in bulk."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -18,6 +18,8 @@ class SummaryRow:
 
     start_ms: int
     end_ms: int
+    name: str
+    """The shift's; empty for an hour or a day."""
     cells_read: int
     readings: int
     sum_uv: int
@@ -31,7 +33,6 @@ def keep_summaries(
     from_ms: int,
     to_ms: int,
     rows: Sequence[SummaryRow],
-    names: Mapping[int, str],
 ) -> None:
     """Write the summaries of one level in place of those that start in [from_ms, to_ms)."""
     execute(
@@ -49,7 +50,7 @@ def keep_summaries(
                 level,
                 row.start_ms,
                 row.end_ms,
-                names[row.start_ms],
+                row.name,
                 row.cells_read,
                 row.readings,
                 row.sum_uv,

@@ -116,7 +116,8 @@ class Tails:
         place = np.arange(len(cell_id)) - np.maximum.accumulate(
             np.where(first, np.arange(len(cell_id)), 0)
         )
-        row = cells[np.searchsorted(np.array(ids), cell_id)]
+        by_id = np.argsort(ids)
+        row = cells[by_id[np.searchsorted(np.array(ids)[by_id], cell_id)]]
         self._at_ms[row, place] = at_ms
         self._volts[row, place] = microvolts / 1e6
 

@@ -6,15 +6,26 @@ import numpy as np
 from numpy.typing import NDArray
 from sqlalchemy.orm import Session
 
-from server.storage.direct import fetch_rows
+from server.storage.direct import fetch_columns
 
-_LAST = (
-    "SELECT at_ms, microvolts, suspect FROM reading"
-    " WHERE cell_id = ? AND at_ms < ? AND at_ms >= ?"
-    " ORDER BY at_ms DESC, revision DESC LIMIT ?"
-)
+_AT_ONCE = 250
+"""Cells asked for with one statement."""
+
 _TO_SPARE = 3
 """Rows asked for beyond the wanted ones, for doubted readings and former revisions among them."""
+
+_NOT_BELIEVED_UV = -(2**62)
+
+# Of each cell the last moments are looked up by the table's own order, one cell after another.
+_LAST = (
+    "WITH asked (cell_id, before_ms) AS (VALUES {asked})"
+    " SELECT r.cell_id, r.at_ms, r.revision,"
+    f" CASE WHEN r.suspect = 0 THEN COALESCE(r.microvolts, {_NOT_BELIEVED_UV})"
+    f" ELSE {_NOT_BELIEVED_UV} END"
+    " FROM asked a JOIN reading r ON r.cell_id = a.cell_id AND r.at_ms IN ("
+    " SELECT q.at_ms FROM reading q WHERE q.cell_id = a.cell_id AND q.at_ms < a.before_ms"
+    " AND q.at_ms >= a.before_ms - ? ORDER BY q.at_ms DESC LIMIT ?)"
+)
 
 
 def last_believed(
@@ -22,26 +33,38 @@ def last_believed(
 ) -> tuple[NDArray[np.int64], NDArray[np.int64], NDArray[np.int64]]:
     """The last readings that count of each (cell_id, before_ms), at most `count` of each.
 
-    Answers (cell_id, at_ms, microvolts) by cell in the order asked for and by time. Readings
-    older than `reach_ms` before the moment are left out. Of many doubted readings in a row
-    fewer than `count` believed ones may be found.
+    Answers (cell_id, at_ms, microvolts) by cell and time. Readings older than `reach_ms`
+    before the moment are left out. Of many doubted readings in a row fewer than `count`
+    believed ones may be found.
     """
-    found: list[tuple[int, int, int]] = []
-    for cell_id, before_ms in cells:
-        rows = fetch_rows(
-            session, _LAST, (cell_id, before_ms, before_ms - reach_ms, count + _TO_SPARE)
+    parts = []
+    for start in range(0, len(cells), _AT_ONCE):
+        some = cells[start : start + _AT_ONCE]
+        # Cast, so that PostgreSQL takes them for what they are.
+        asked = ", ".join(["(CAST(? AS BIGINT), CAST(? AS BIGINT))"] * len(some))
+        parts.append(
+            fetch_columns(
+                session,
+                _LAST.format(asked=asked),
+                [*(value for pair in some for value in pair), reach_ms, count + _TO_SPARE],
+                (("cell_id", "i8"), ("at_ms", "i8"), ("revision", "i8"), ("microvolts", "i8")),
+            )
         )
-        kept: list[tuple[int, int, int]] = []
-        seen_ms = before_ms
-        for at_ms, microvolts, suspect in rows:
-            # Of each moment only the highest revision counts, and it comes first.
-            if at_ms != seen_ms and microvolts is not None and not suspect:
-                kept.append((cell_id, at_ms, microvolts))
-            seen_ms = at_ms
-        found.extend(reversed(kept[:count]))
-    table = np.array(found, np.int64).reshape(-1, 3)
+    rows = np.concatenate(parts) if parts else np.empty(0, [("cell_id", "i8")])
+    if not len(rows):
+        nothing = np.empty(0, np.int64)
+        return nothing, nothing, nothing
+    rows = rows[np.lexsort((rows["revision"], rows["at_ms"], rows["cell_id"]))]
+    # Of each moment only the highest revision counts.
+    is_last = np.ones(len(rows), bool)
+    is_last[:-1] = (np.diff(rows["cell_id"]) != 0) | (np.diff(rows["at_ms"]) != 0)
+    rows = rows[is_last & (rows["microvolts"] != _NOT_BELIEVED_UV)]
+    cell_id = np.ascontiguousarray(rows["cell_id"])
+    # Counted from the end of each cell's readings.
+    ends = np.searchsorted(cell_id, cell_id, side="right")
+    rows = rows[ends - np.arange(len(rows)) <= count]
     return (
-        np.ascontiguousarray(table[:, 0]),
-        np.ascontiguousarray(table[:, 1]),
-        np.ascontiguousarray(table[:, 2]),
+        np.ascontiguousarray(rows["cell_id"]),
+        np.ascontiguousarray(rows["at_ms"]),
+        np.ascontiguousarray(rows["microvolts"]),
     )

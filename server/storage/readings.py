@@ -152,12 +152,18 @@ def history(session: Session, cell_id: int, at_ms: int) -> list[tuple[int, int |
 
 def last_of_each(session: Session, cell_ids: Sequence[int]) -> dict[int, int]:
     """Moment of the newest reading of each cell, believed or not; one seek a cell."""
-    newest = {}
-    for cell_id in cell_ids:
-        rows = fetch_rows(session, "SELECT MAX(at_ms) FROM reading WHERE cell_id = ?", (cell_id,))
-        if rows[0][0] is not None:
-            newest[cell_id] = int(rows[0][0])
-    return newest
+    if not cell_ids:
+        return {}
+    return {
+        int(cell_id): int(newest)
+        for cell_id, newest in fetch_rows(
+            session,
+            "SELECT c.id, (SELECT MAX(r.at_ms) FROM reading r WHERE r.cell_id = c.id)"
+            f" FROM cell c WHERE c.id IN ({marks(len(cell_ids))})",
+            tuple(cell_ids),
+        )
+        if newest is not None
+    }
 
 
 def newest_believed(session: Session, cell_id: int) -> tuple[int, int] | None:

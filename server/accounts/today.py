@@ -101,7 +101,7 @@ def _looked_at(state: SectionState, now_ms: int, max_hold_ms: int) -> SectionTod
         week_kg=_made_kg(state.recent),
         is_efficiency_low=is_efficiency_low(state.recent),
         is_energy_high=is_energy_high(state.recent),
-        is_round_late=is_round_late(state.round, state.is_off, now_ms),
+        is_round_late=is_round_late(state.round, state.is_off, state.amps_at_ms, now_ms),
         is_current_old=is_current_old(state.amps_at_ms, state.is_off, now_ms, max_hold_ms),
     )
 

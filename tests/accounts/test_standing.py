@@ -40,7 +40,12 @@ def test_a_current_is_old_when_it_is_no_longer_held(amps_at_ms, is_off, is_old):
 
 
 def test_a_round_is_late_only_in_the_last_hour_of_the_shift():
-    assert is_round_late(walked(9), False, NOW_MS)
-    assert not is_round_late(walked(10), False, NOW_MS)
-    assert not is_round_late(walked(0), True, NOW_MS)
-    assert not is_round_late(walked(0, to_ms=NOW_MS + 2 * HOUR_MS), False, NOW_MS)
+    assert is_round_late(walked(9), False, NOW_MS, NOW_MS)
+    assert not is_round_late(walked(10), False, NOW_MS, NOW_MS)
+    assert not is_round_late(walked(0), True, NOW_MS, NOW_MS)
+    assert not is_round_late(walked(0, to_ms=NOW_MS + 2 * HOUR_MS), False, NOW_MS, NOW_MS)
+
+
+@pytest.mark.parametrize("amps_at_ms", [None, NOW_MS - 25 * HOUR_MS])
+def test_a_section_that_nobody_runs_has_no_late_round(amps_at_ms):
+    assert not is_round_late(walked(0), False, amps_at_ms, NOW_MS)

@@ -32,7 +32,8 @@ def voltage_figure(
     """Voltage at rated current as a line, as read as points, with flags and doubts marked."""
     if not len(series.at_ms):
         return None
-    believed = series.suspect == 0
+    # A voltage without load says nothing of the cell at work, and would flatten all the others.
+    believed = (series.suspect == 0) & np.isfinite(referred_v)
     at_ms, read_v, lined_v = series.at_ms[believed], series.volts[believed], referred_v[believed]
     lines = [
         Line(_("as read"), at_ms, read_v, shape="points", quiet=True),

@@ -97,6 +97,8 @@ def _view(
         "is_efficiency_low": is_efficiency_low(account),
         "is_energy_high": is_energy_high(account),
         "waterfall_j_kg": sum(item.j_kg for item in account.waterfall),
+        "made_kg": account.period.made_kg if account.charge.cell_c > 0 else None,
+        "has_figures": any(trend.figure for trend in trends),
         "trends": trends[:-1],
         "current": trends[-1],
         "days": list(reversed(days)),

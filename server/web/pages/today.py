@@ -19,7 +19,8 @@ router = APIRouter(include_in_schema=False)
 FIRST_FLAGS = 8
 """Open flags that are listed at once; the rest is folded away."""
 
-_LONG_AGO_MS = 2 * DAY_MS
+_LONG_AGO_MS = 7 * DAY_MS
+"""With nothing newer than this, every figure of the page would be missing."""
 
 
 @router.get("/", name="today")

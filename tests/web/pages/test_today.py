@@ -115,7 +115,10 @@ def test_records_of_long_ago_are_told_with_their_day(client, session):
 
     said = words_of(client.get("/"))
 
-    assert "The newest record is of Thu 25 Jan 2024" in said
+    assert "Nothing was recorded in the last seven days The newest record is of" in said
+    assert "Thu 25 Jan 2024" in said
+    assert "●" not in said
+    assert "no data" not in said
 
 
 def test_a_reader_sees_the_page_and_a_stranger_signs_in_first(client_of, anonymous, session):

@@ -24,6 +24,7 @@ from server.commands.terminal import (
 from server.intake.plant_file import PlantFile, PlantFileWrong, found_plant, read_plant
 from server.storage.condition import newest_revision, readiness
 from server.storage.database import Database
+from server.storage.derived_rows import orphaned_readings
 from server.storage.plant import has_plant, house
 
 
@@ -92,7 +93,11 @@ def _unsound(database: Database) -> list[str]:
         if not has_plant(session):
             return ["there is no tankhouse in these books"]
         plant = house(session)
-        faults = []
+        faults = [
+            f"readings point to a {what} that is not in the books ({count} such)"
+            for what, count in orphaned_readings(session).items()
+            if count
+        ]
         with bar("Checking", counts=True) as progress:
             for number, section in enumerate(plant.sections):
                 faults += unsound(session, section)

@@ -1,4 +1,4 @@
-"""Derived rows as they lie, for whoever examines the books."""
+"""Rows as they lie, for whoever examines the books."""
 
 import numpy as np
 from numpy.typing import NDArray
@@ -47,3 +47,22 @@ def last_summaries(
             (section_id, level, count),
         )
     ]
+
+
+def orphaned_readings(session: Session) -> dict[str, int]:
+    """Readings whose cell or delivery is not in the books: how many ids, by what is missing."""
+    deliveries = fetch_rows(
+        session,
+        "SELECT COUNT(*) FROM (SELECT DISTINCT delivery_id FROM reading) r"
+        " WHERE NOT EXISTS (SELECT 1 FROM delivery d WHERE d.id = r.delivery_id)",
+    )[0][0]
+    # The readings of a cell lie together, so that each cell takes one step and not a scan.
+    cells = fetch_rows(
+        session,
+        "WITH RECURSIVE step (cell_id) AS (SELECT MIN(cell_id) FROM reading UNION ALL"
+        " SELECT (SELECT MIN(r.cell_id) FROM reading r WHERE r.cell_id > step.cell_id)"
+        " FROM step WHERE step.cell_id IS NOT NULL)"
+        " SELECT COUNT(*) FROM step WHERE cell_id IS NOT NULL"
+        " AND NOT EXISTS (SELECT 1 FROM cell c WHERE c.id = step.cell_id)",
+    )[0][0]
+    return {"cell": int(cells), "delivery": int(deliveries)}

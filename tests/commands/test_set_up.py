@@ -79,6 +79,32 @@ def test_check_finds_what_is_wrong_and_recompute_mends_it(filled, damage, words)
     assert filled.run("check") == 0
 
 
+@pytest.mark.parametrize(
+    ("damage", "words"),
+    [
+        (
+            "UPDATE reading SET delivery_id = 999",
+            "point to a delivery that is not in the books (1 such)",
+        ),
+        (
+            "UPDATE reading SET cell_id = 999 WHERE cell_id = 2",
+            "point to a cell that is not in the books (1 such)",
+        ),
+    ],
+)
+def test_check_finds_readings_that_belong_to_nothing(filled, damage, words):
+    from server.storage.database import Database
+    from server.storage.direct import execute
+
+    database = Database(filled.url)
+    with database.write() as session:
+        execute(session, damage)
+    database.close()
+
+    assert filled.run("check") == 1
+    assert words in filled.complained
+
+
 def test_recompute_makes_the_same_figures_again(filled):
     tables = {
         "charge_day": "section_id, day_ms",

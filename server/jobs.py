@@ -8,7 +8,7 @@ from sqlalchemy.orm import Session
 from server.accounts.rollup import bring_up_to_date, next_block
 from server.settings import Settings
 from server.storage.database import Database
-from server.storage.plant import house
+from server.storage.kept_house import kept_house
 from server.storage.rebuild import forget_derived, record_span
 from server.storage.stale import mark, pending
 
@@ -19,7 +19,7 @@ Progress = Callable[[int], None]
 def catch_up(session: Session, settings: Settings, budget_s: float | None = None) -> int:
     """Bring derived figures up to date within a session; answers how many stretches are left."""
     until = None if budget_s is None else time.monotonic() + budget_s
-    plant = house(session)
+    plant = kept_house(session)
     while (block := next_block(session)) is not None:
         bring_up_to_date(session, plant, block, settings.max_hold_ms)
         if until is not None and time.monotonic() > until:
@@ -31,14 +31,12 @@ def catch_up_fully(
     database: Database, settings: Settings, progress: Progress | None = None
 ) -> None:
     """Bring derived figures up to date, one block a transaction, so that it can be resumed."""
-    plant = None
     while True:
         with database.write() as session:
             block = next_block(session)
             if block is None:
                 return
-            plant = plant or house(session)
-            bring_up_to_date(session, plant, block, settings.max_hold_ms)
+            bring_up_to_date(session, kept_house(session), block, settings.max_hold_ms)
             left = len(pending(session))
         if progress is not None:
             progress(left)
@@ -48,7 +46,7 @@ def recompute(database: Database, settings: Settings, progress: Progress | None 
     """Forget everything derived and work it out again from what was recorded."""
     with database.write() as session:
         forget_derived(session)
-        for section in house(session).sections:
+        for section in kept_house(session).sections:
             for kind, span in record_span(session, section).items():
                 mark(session, section.id, kind, *span)
     catch_up_fully(database, settings, progress)

@@ -67,6 +67,13 @@ class Settings(BaseSettings):
         int,
         Field(ge=1, le=4096, description="Largest unpacked size of a spreadsheet file, in MiB."),
     ] = 512
+    upload_folder: Annotated[
+        Path | None,
+        Field(
+            description="Where uploaded files wait until somebody has looked at them; left out: "
+            "beside the SQLite file, or in the system's temporary folder with PostgreSQL."
+        ),
+    ] = None
     session_h: Annotated[
         float,
         Field(gt=0, le=24 * 31, description="Hours after which a signed-in person signs in anew."),

@@ -37,7 +37,9 @@ class Database:
             self._reader = self._sqlite_engine(writes=False)
             self._writer = self._sqlite_engine(writes=True)
         else:
-            self._reader = create_engine(self.url, pool_size=8, pool_pre_ping=True)
+            self._reader = create_engine(
+                self.url, pool_size=8, pool_pre_ping=True, hide_parameters=True
+            )
             self._writer = self._reader
 
     def _sqlite_engine(self, writes: bool) -> Engine:
@@ -45,6 +47,7 @@ class Database:
             self.url,
             pool_size=1 if writes else 6,
             max_overflow=0 if writes else 4,
+            hide_parameters=True,
             connect_args={"check_same_thread": False, "timeout": 30, "isolation_level": None},
         )
         cache_kib = _WRITER_CACHE_KIB if writes else _READER_CACHE_KIB

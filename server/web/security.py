@@ -45,7 +45,7 @@ class Passwords:
         if len(password) > PASSWORD_MOST:
             return False
         with self._room:
-            if kept is None:
+            if not kept:
                 self._hash.verify(_normal(password), self._of_nobody())
                 return False
             return self._hash.verify(_normal(password), kept)

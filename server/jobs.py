@@ -6,6 +6,7 @@ from collections.abc import Callable
 from sqlalchemy.orm import Session
 
 from server.accounts.rollup import bring_up_to_date, next_block
+from server.intake.outages import refresh_bypasses
 from server.settings import Settings
 from server.storage.database import Database
 from server.storage.kept_house import kept_house
@@ -47,6 +48,7 @@ def recompute(database: Database, settings: Settings, progress: Progress | None 
     with database.write() as session:
         forget_derived(session)
         for section in kept_house(session).sections:
+            refresh_bypasses(session, section)
             for kind, span in record_span(session, section).items():
                 mark(session, section.id, kind, *span)
     catch_up_fully(database, settings, progress)

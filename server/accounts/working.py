@@ -43,7 +43,7 @@ def workings(
             "kg_per_kah",
             "K = M / (z F)",
             (
-                Input("M", metal.molar_mass_kg_mol * 1e3, "g/mol", "IUPAC abridged weight"),
+                Input("M", metal.molar_mass_kg_mol * 1e3, "g/mol", "IUPAC standard atomic weight"),
                 Input("z", float(metal.electrons), "", "process of the section"),
                 Input("F", FARADAY_C_MOL, "C/mol", "CODATA 2022"),
             ),

@@ -237,7 +237,7 @@ def _view(
         "crops_figure": crops_figure(window, crops, terms.target_current_efficiency),
         "crops": crops,
         "flags": list(reversed(flags)),
-        "events": [event for event in events if event.kind != "correction"],
+        "events": events,
         "readings": readings.readings,
         "older_url": _address(period, kept, before=readings.before_ms),
         "newer_url": _address(period, kept) if asked.before else None,

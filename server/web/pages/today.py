@@ -16,8 +16,8 @@ from server.web.render import page
 
 router = APIRouter(include_in_schema=False)
 
-FIRST_FLAGS = 8
-"""Open flags that are listed at once; the rest is folded away."""
+FIRST_FLAGS, MOST_FLAGS = 8, 40
+"""Open flags that are listed at once, and that are listed at all; the others are folded away."""
 
 _LONG_AGO_MS = 7 * DAY_MS
 """With nothing newer than this, every figure of the page would be missing."""
@@ -40,7 +40,8 @@ def _view(session: Session, house: House, now_ms: int, max_hold_ms: int) -> dict
         "is_long_ago": last_ms is not None and last_ms < now_ms - _LONG_AGO_MS,
         "currency": house.currency,
         "first": flags[:FIRST_FLAGS],
-        "others": flags[FIRST_FLAGS:],
+        "others": flags[FIRST_FLAGS:MOST_FLAGS],
+        "unlisted": max(len(flags) - MOST_FLAGS, 0),
         "held": sum(held_counts(session).values()),
         "doubted": suspect_count(session),
         "metal_words": metal_words,

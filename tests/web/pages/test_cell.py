@@ -75,6 +75,7 @@ def test_a_superintendent_corrects_a_reading_and_the_former_value_stays(client, 
         "/sections/EW1/cells/4?#readings",
     )
     assert rows[0][1] == "2.041"
+    assert "became 2.041 V, by person" in words_of(client.get("/sections/EW1/cells/4"))
     assert re.search(r"changed 2\.041 V, by person \d+, .*: misread 2\.03\d V, by ana", rows[0][3])
 
 

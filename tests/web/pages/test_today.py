@@ -6,6 +6,7 @@ from tests.factories import (
     DAY_MS,
     HOUR_MS,
     NOW_MS,
+    make_flag,
     make_held_row,
     make_outage,
     make_section,
@@ -98,6 +99,17 @@ def test_the_costliest_cell_comes_first_with_what_it_costs_a_day(client, session
     said = words_of(client.get("/"))
 
     assert re.search(r"Costliest first EW1, cell 4 [\d ]+ USD a day ▼ short, about", said)
+
+
+def test_many_flags_are_folded_away_and_the_rest_is_counted(client, session):
+    section = make_section(session, name="EW1", cells=45)
+    for cell_id in section.cell_ids:
+        make_flag(session, section.id, cell_id)
+
+    page = client.get("/")
+
+    assert page.text.count("drifting high") == 40
+    assert "5 more stand on the pages of their sections." in page.text
 
 
 def test_what_waits_for_somebody_is_told(client, session):

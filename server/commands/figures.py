@@ -4,8 +4,10 @@ from collections.abc import Callable
 
 from server import jobs
 from server.commands.terminal import Bar, bar
+from server.intake.outages import refresh_bypasses
 from server.settings import Settings
 from server.storage.database import Database
+from server.storage.plant import house
 from server.storage.stale import pending
 
 
@@ -16,7 +18,10 @@ def bring_up_to_date(database: Database, settings: Settings) -> None:
 
 
 def recompute(database: Database, settings: Settings) -> None:
-    """Work everything derived out anew."""
+    """Work everything derived out anew, from the outages on."""
+    with database.write() as session:
+        for section in house(session).sections:
+            refresh_bypasses(session, section)
     with bar("Working everything out anew") as shown:
         jobs.recompute(database, settings, _followed(database, shown))
 

@@ -21,8 +21,10 @@ from server.commands.terminal import (
     shown,
     sqlite_path,
 )
+from server.intake.outages import OPEN_END_MS, bypasses_recorded
 from server.intake.plant_file import PlantFile, PlantFileWrong, found_plant, read_plant
 from server.storage.condition import newest_revision, readiness
+from server.storage.current import bypasses_of
 from server.storage.database import Database
 from server.storage.derived_rows import orphaned_readings
 from server.storage.plant import has_plant, house
@@ -101,6 +103,12 @@ def _unsound(database: Database) -> list[str]:
         with bar("Checking", counts=True) as progress:
             for number, section in enumerate(plant.sections):
                 faults += unsound(session, section)
+                kept = bypasses_of(session, section.cell_ids, 0, OPEN_END_MS)
+                if kept != bypasses_recorded(session, section):
+                    faults.append(
+                        f"{section.name}: the bypasses are not those of the outages;"
+                        " `ampledger recompute` mends it"
+                    )
                 progress(number + 1, len(plant.sections))
         return faults
 

@@ -148,20 +148,21 @@ def mark_outages(
 
 def refresh_bypasses(session: Session, plan: SectionPlan) -> None:
     """Write anew when each cell of a section was bypassed, from the outages as they count."""
+    keep_bypasses(session, plan.cell_ids, bypasses_recorded(session, plan))
+
+
+def bypasses_recorded(session: Session, plan: SectionPlan) -> list[tuple[int, int, int]]:
+    """When each cell was bypassed by the outages as they count: (cell_id, from_ms, to_ms)."""
     spans: dict[int, list[_Span]] = {}
     for cells, from_ms, to_ms, _ in effective_outages(session, plan.id, 0, OPEN_END_MS):
         for number in parse_cells(cells):
             end_ms = OPEN_END_MS if to_ms is None else to_ms
-            spans.setdefault(number, []).append((from_ms, end_ms))
-    keep_bypasses(
-        session,
-        plan.cell_ids,
-        [
-            (plan.cell_id(number), from_ms, to_ms)
-            for number in sorted(spans)
-            for from_ms, to_ms in _merged(spans[number])
-        ],
-    )
+            spans.setdefault(plan.cell_id(number), []).append((from_ms, end_ms))
+    return [
+        (cell_id, from_ms, to_ms)
+        for cell_id in sorted(spans)
+        for from_ms, to_ms in _merged(spans[cell_id])
+    ]
 
 
 def _merged(spans: Sequence[_Span]) -> list[_Span]:

@@ -7,6 +7,8 @@ SHEETS = {
     "2024-03-04T06:00Z,EW1,2,2.041\n",
     "current.csv": "at,section,current_ka\n2024-03-04T00:00Z,EW1,35.9\n"
     "2024-03-04T01:00Z,EW1,35.8\n2024-03-05T03:00Z,EW1,35.8\n",
+    "outages.csv": "section,cells,from,to,state\n"
+    "EW1,3-4,2024-03-04T02:00Z,2024-03-04T03:00Z,bypassed\n",
 }
 
 
@@ -61,6 +63,7 @@ def test_check_finds_sound_books_sound(filled):
         ("DELETE FROM charge_knot WHERE at_ms % 86400000 = 0", "no step at its start"),
         ("UPDATE charge_knot SET amps = amps + 1", "add up to the charge of their day"),
         ("UPDATE latest_reading SET microvolts = microvolts + 1", "newest reading of cell"),
+        ("DELETE FROM bypassed_cell", "bypasses are not those of the outages"),
         ("UPDATE summary SET sum_uv = sum_uv + 1 WHERE level = 'day'", "summary of a day"),
     ],
 )
@@ -112,6 +115,7 @@ def test_recompute_makes_the_same_figures_again(filled):
         "energy_day": "section_id, day_ms",
         "summary": "section_id, level, start_ms",
         "latest_reading": "cell_id",
+        "bypassed_cell": "cell_id, from_ms",
     }
 
     def derived():

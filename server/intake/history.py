@@ -136,12 +136,32 @@ def medians_before(
     before: Whole = np.cumsum(is_usable) - is_usable
     starts = np.append(True, np.diff(readings.number) != 0)
     since = np.maximum.accumulate(np.where(starts, before, 0))
-    former = before[asked, None] - 1 - np.arange(LAST_READINGS)
-    is_there = former >= since[asked, None]
-    taken = usable[np.maximum(former, 0)]
-    is_there &= readings.at_ms[asked, None] - readings.at_ms[taken] <= REACH_MS
-    window = np.where(is_there, values[taken], np.inf)
-    return _middles(window, np.count_nonzero(is_there, axis=1), 1)
+    before, since, at_ms = before[asked], since[asked], readings.at_ms[asked]
+    kept_v, kept_ms = values[usable], readings.at_ms[usable]
+    answer = np.full(len(asked), np.nan)
+    # Where the oldest of a whole window is there and near, so are the others.
+    oldest = before - LAST_READINGS
+    is_whole = oldest >= since
+    is_whole &= at_ms - kept_ms[np.maximum(oldest, 0)] <= REACH_MS
+    whole = oldest[is_whole]
+    answer[is_whole] = _median_of_five([kept_v[whole + k] for k in range(LAST_READINGS)])
+    some = np.flatnonzero(~is_whole & (before > since))
+    former = before[some, None] - 1 - np.arange(LAST_READINGS)
+    is_there = former >= since[some, None]
+    former = np.maximum(former, 0)
+    is_there &= at_ms[some, None] - kept_ms[former] <= REACH_MS
+    window = np.where(is_there, kept_v[former], np.inf)
+    answer[some] = _middles(window, np.count_nonzero(is_there, axis=1), 1)
+    return answer
+
+
+def _median_of_five(of: list[Numbers]) -> Numbers:
+    """Median of five arrays, place by place, in ten comparisons instead of a sort."""
+    a, b, c, d, e = of
+    low = np.maximum(np.minimum(a, b), np.minimum(c, d))
+    high = np.minimum(np.maximum(a, b), np.maximum(c, d))
+    middle: Numbers = np.maximum(np.minimum(e, low), np.minimum(np.maximum(e, low), high))
+    return middle
 
 
 def _middles(window: Numbers, count: Whole, least: int) -> Numbers:

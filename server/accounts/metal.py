@@ -50,7 +50,7 @@ def made_account(
     change_kg = end.total_kg - start.total_kg
     made_kg = harvested_kg + change_kg
     # Harvest and judged stock both rest on the scale: its error is common to them.
-    u_made_kg = root_sum(doubts.scale * made_kg, start.u_kg, end.u_kg)
+    u_made_kg = root_sum(doubts.scale * made_kg, *_doubts_of_change(start, end))
     efficiency = u_efficiency = None
     if theoretical_kg > 0:
         efficiency = made_kg / theoretical_kg
@@ -68,4 +68,18 @@ def made_account(
         u_made_kg=u_made_kg,
         current_efficiency=efficiency,
         u_current_efficiency=u_efficiency,
+    )
+
+
+def _doubts_of_change(start: Stock, end: Stock) -> tuple[float, float, float]:
+    """Standard uncertainties of a change of stock, kg: independent contributions.
+
+    Cathodes that hang at both ends are judged alike, and only what they grew between is in
+    doubt; those that were pulled or hung between have a doubt of their own.
+    """
+    both = start.doubts_kg.keys() & end.doubts_kg.keys()
+    return (
+        abs(sum(end.doubts_kg[key] - start.doubts_kg[key] for key in both)),
+        sum(u_kg for key, u_kg in start.doubts_kg.items() if key not in both),
+        sum(u_kg for key, u_kg in end.doubts_kg.items() if key not in both),
     )

@@ -77,7 +77,7 @@ def cell_states(session: Session, house: House, section_name: str, now_ms: int) 
         cell_id = section.cell_id(number)
         read_ms, volts = newest.get(cell_id, (None, None))
         flag = flags.get(cell_id)
-        efficiency = float(stock.efficiency[number - 1])
+        efficiency = float(stock.shown_efficiency[number - 1])
         cells.append(
             CellState(
                 number=number,
@@ -98,16 +98,21 @@ def cell_states(session: Session, house: House, section_name: str, now_ms: int) 
 
 def section_states(session: Session, house: House, now_ms: int) -> list[SectionState]:
     """Every section as it is now: current, round, the last week's figures, open flags."""
-    return [_section_state(session, house, section, now_ms) for section in house.sections]
+    flags: dict[int, list[Flag]] = {}
+    for flag in flags_touching(session, now_ms, now_ms + 1, open_only=True):
+        flags.setdefault(flag.section_id, []).append(flag)
+    return [
+        _section_state(session, house, section, flags.get(section.id, []), now_ms)
+        for section in house.sections
+    ]
 
 
 def _section_state(
-    session: Session, house: House, section: SectionPlan, now_ms: int
+    session: Session, house: House, section: SectionPlan, flags: list[Flag], now_ms: int
 ) -> SectionState:
     terms = section.terms_at(now_ms)
     is_off, states = states_of_cells(session, section, now_ms)
     sample = last_current(session, section, now_ms)
-    flags = flags_touching(session, now_ms, now_ms + 1, section.id, open_only=True)
     today = day_of(now_ms, house.time_zone)
     # At midnight sharp the day has no length yet; its first millisecond stands for it.
     to_ms = max(now_ms, today.from_ms + 1)

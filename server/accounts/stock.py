@@ -1,12 +1,13 @@
 """Metal that hangs in the cells: charge since it was hung, times what the evidence says of it."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 from sqlalchemy.orm import Session
 
-from server.accounts.charge import charge_record, charges_at
+from server.accounts.charge import charges_at
 from server.accounts.crops import LOOK_BACK, hanging
 from server.accounts.doubt import STOCK_MODEL, STOCK_SHAPE
 from server.accounts.periods import DAY_MS
@@ -29,16 +30,27 @@ _LONGEST_CROP_MS = 90 * DAY_MS
 
 @dataclass(frozen=True)
 class Stock:
-    """Metal still hanging in the cells of a section at a moment, per cell."""
+    """Metal still hanging in the cells of a section at a moment, per cell.
+
+    What is pulled at that very moment hangs still.
+    """
 
     at_ms: int
     kg: Numbers
     started_ms: NDArray[np.int64]
     """When the oldest cathodes of each cell were hung; 0: before its first lot."""
-    efficiency: Numbers
-    """Share by which each cell's charge was judged."""
-    u_kg: float
-    """Standard uncertainty of the sum from the judgement alone, without scale and current."""
+    shown_efficiency: Numbers
+    """What each cell's recent crops showed; NaN where it had none."""
+    doubts_kg: Mapping[tuple[int, int], float]
+    """Standard uncertainty, from the judgement alone, of each (cell's place, moment hung)."""
+
+    @property
+    def u_kg(self) -> float:
+        """Standard uncertainty of the sum from the judgement alone, without scale and current.
+
+        What is judged alike errs alike: the parts' uncertainties are added up.
+        """
+        return sum(self.doubts_kg.values())
 
     @property
     def total_kg(self) -> float:
@@ -73,9 +85,9 @@ class StockBook:
         charge_c = self._crops["charge_c"]
         with np.errstate(divide="ignore", invalid="ignore"):
             self._kg_per_crop_c = np.where(charge_c > 0, self._crops["metal_kg"] / charge_c, np.nan)
-        self._record = charge_record(session, section.id, from_ms - _RECENT_MS, to_ms + 1)
         self._from_ms = from_ms - _RECENT_MS
         self._kept: dict[int, Stock] = {}
+        self._charge_at: dict[int, float] = {}
         self._bypasses = bypasses_of(session, section.cell_ids, self._from_ms, to_ms)
 
     def at(self, at_ms: int) -> Stock:
@@ -97,10 +109,14 @@ class StockBook:
         terms = self._section.terms_at(at_ms)
         cells, there = len(self._section.cell_ids), terms.cells
         pulled_ms, started_ms = self._crops["pulled_ms"], self._crops["started_ms"]
-        recent = np.arange(*np.searchsorted(pulled_ms, [at_ms - _RECENT_MS, at_ms + 1]))
-        later = np.flatnonzero((pulled_ms > at_ms) & (started_ms < at_ms))
-        efficiency = np.full(cells, np.nan)
-        efficiency[:there] = self._efficiencies(recent, there, terms.target_current_efficiency)
+        recent = np.arange(*np.searchsorted(pulled_ms, [at_ms - _RECENT_MS, at_ms]))
+        later = np.flatnonzero((pulled_ms >= at_ms) & (started_ms < at_ms))
+        shown_efficiency, efficiency = np.full(cells, np.nan), np.full(cells, np.nan)
+        shown_efficiency[:there], centre = self._efficiencies(recent, there)
+        judged = terms.target_current_efficiency if np.isnan(centre) else centre
+        efficiency[:there] = np.where(
+            np.isnan(shown_efficiency[:there]), judged, shown_efficiency[:there]
+        )
         # Place -1 is that of no crop.
         pulled_ms, started_ms = np.append(pulled_ms, 0), np.append(started_ms, 0)
         cathodes = np.append(self._crops["cathodes"], 0)
@@ -130,18 +146,24 @@ class StockBook:
         for place in np.flatnonzero(~is_usual[:there]).tolist():
             own = recent[self._place[recent] == place]
             own_later = later[self._place[later] == place]
-            judged = self._kg_per_c * float(efficiency[place])
-            cell = self._unusual(place, own, own_later, terms.cathodes_per_cell, judged, at_ms)
+            kg_per_c = self._kg_per_c * float(efficiency[place])
+            cell = self._unusual(place, own, own_later, terms.cathodes_per_cell, kg_per_c, at_ms)
             parts.append(cell)
             started[place] = cell.started_ms.min() if len(cell.started_ms) else 0
-        kg, u_kg = self._filled(at_ms, parts)
-        return Stock(at_ms=at_ms, kg=kg, started_ms=started, efficiency=efficiency, u_kg=u_kg)
+        kg, doubts_kg = self._filled(at_ms, parts)
+        return Stock(
+            at_ms=at_ms,
+            kg=kg,
+            started_ms=started,
+            shown_efficiency=shown_efficiency,
+            doubts_kg=doubts_kg,
+        )
 
-    def _efficiencies(self, recent: NDArray[np.int64], there: int, target: float) -> Numbers:
-        """What each cell's recent crops showed; for a cell without any, the section or target."""
+    def _efficiencies(self, recent: NDArray[np.int64], there: int) -> tuple[Numbers, float]:
+        """What each cell's recent crops showed, and all of them together; NaN without any."""
         shown = self._kg_per_crop_c[recent] / self._kg_per_c
         place, shown = self._place[recent][np.isfinite(shown)], shown[np.isfinite(shown)]
-        centre = float(np.median(shown)) if len(shown) else target
+        centre = float(np.median(shown)) if len(shown) else float("nan")
         order = np.argsort(place, kind="stable")
         place, shown = place[order], shown[order]
         from_end = np.searchsorted(place, place, side="right") - 1 - np.arange(len(place))
@@ -152,7 +174,7 @@ class StockBook:
         count = np.isfinite(table).sum(axis=1)
         rows = np.arange(there)
         middle = (table[rows, np.maximum(count - 1, 0) // 2] + table[rows, count // 2]) / 2
-        return np.where(count > 0, middle, centre)
+        return middle, centre
 
     def _unusual(
         self,
@@ -168,7 +190,7 @@ class StockBook:
         if FROM_THE_START_MS in groups:
             # Some cathodes hang since before these crops: look further back for their pull.
             former = last_crops_of_cell(
-                self._session, self._section.cell_ids[place], at_ms + 1, LOOK_BACK
+                self._session, self._section.cell_ids[place], at_ms, LOOK_BACK
             )
             groups = {h.started_ms: h.cathodes for h in hanging(cathodes, former)}
         found: list[tuple[int, float, float]] = []
@@ -192,11 +214,10 @@ class StockBook:
             np.array([f[2] for f in found]),
         )
 
-    def _filled(self, at_ms: int, parts: list[_Parts]) -> tuple[Numbers, float]:
-        """Metal of each cell, and how sure its sum is, from each part's charge.
-
-        What is judged alike errs alike: the parts' uncertainties are added up.
-        """
+    def _filled(
+        self, at_ms: int, parts: list[_Parts]
+    ) -> tuple[Numbers, dict[tuple[int, int], float]]:
+        """Metal of each cell, and how sure each part of it is, from the parts' charge."""
         place = np.concatenate([p.place for p in parts])
         start = np.concatenate([p.started_ms for p in parts])
         kg_per_c = np.concatenate([p.kg_per_c for p in parts])
@@ -216,15 +237,17 @@ class StockBook:
         relative_u = np.concatenate([p.relative_u for p in parts])
         kg = np.zeros(len(self._section.cell_ids))
         np.add.at(kg, place, metal_kg)
-        return kg, float(np.sum(metal_kg * relative_u))
+        keys = zip(place.tolist(), start.tolist(), strict=True)
+        return kg, dict(zip(keys, (metal_kg * relative_u).tolist(), strict=True))
 
     def _charges(self, at_ms: int, start: NDArray[np.int64]) -> Numbers:
-        """Charge of the section from each start to a moment, C."""
-        charge_c = self._record.charge_at(np.array([at_ms]))[0] - self._record.charge_at(start)[0]
-        for moment in np.unique(start[start < self._from_ms]).tolist():
-            before, after = charges_at(self._session, self._section.id, (moment, at_ms))
-            charge_c[start == moment] = after[0] - before[0]
-        return charge_c
+        """Charge of the section from each start to a moment, C: look-ups, kept for the next."""
+        moments, place = np.unique(start, return_inverse=True)
+        wanted = [m for m in (*moments.tolist(), at_ms) if m not in self._charge_at]
+        found = charges_at(self._session, self._section.id, wanted)
+        self._charge_at.update((m, c) for m, (c, _) in zip(wanted, found, strict=True))
+        known = np.array([self._charge_at[m] for m in moments.tolist()])
+        return np.asarray(self._charge_at[at_ms] - known[place])
 
 
 def stock_at(session: Session, section: SectionPlan, metal: Metal, at_ms: int) -> Stock:

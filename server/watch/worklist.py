@@ -18,7 +18,7 @@ class WorkItem:
     flag: FlagResult
     rank: int
     walk: int
-    """Place on the walk through its section, from 1."""
+    """Place on the walk through its section, from 1; 0 for a cell that is there no more."""
 
 
 def worklist(session: Session, house: House, at_ms: int) -> list[WorkItem]:
@@ -31,11 +31,15 @@ def worklist(session: Session, house: House, at_ms: int) -> list[WorkItem]:
     flags.sort(
         key=lambda f: (_TIERS.index(f.tier), -(f.lost_value_per_day or 0.0), f.raised_ms, f.cell)
     )
+    places = {
+        name: {cell: place for place, cell in enumerate(_walk(house, name, at_ms), start=1)}
+        for name in {flag.section for flag in flags}
+    }
     return [
-        WorkItem(flag, rank, walk_place(house, flag)) for rank, flag in enumerate(flags, start=1)
+        WorkItem(flag, rank, places[flag.section].get(flag.cell, 0))
+        for rank, flag in enumerate(flags, start=1)
     ]
 
 
-def walk_place(house: House, flag: FlagResult) -> int:
-    """Where on the walk through its section a flag's cell comes."""
-    return walking_order(house.section(flag.section).terms_at(flag.raised_ms)).index(flag.cell) + 1
+def _walk(house: House, section_name: str, at_ms: int) -> tuple[int, ...]:
+    return walking_order(house.section(section_name).terms_at(at_ms))

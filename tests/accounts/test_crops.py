@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from server.accounts.account import metal_of
+from server.accounts.account import metal_of, section_account
 from server.accounts.crops import Hung, hanging
 from server.accounts.lots import cell_crops, lot_results
 from server.accounts.stock import stock_at
@@ -172,3 +172,67 @@ def test_metal_that_was_weighed_later_is_known_in_hindsight(session, section):
 
     assert stock.kg[0] == pytest.approx(0.5 * ideal_kg(section, 2))
     assert stock.kg[1] == pytest.approx(0.93 * ideal_kg(section, 2))
+
+
+def test_what_is_pulled_at_a_moment_hangs_at_that_moment(session, section):
+    pulled_ms = START_MS + 7 * DAY_MS
+    make_lot(
+        session,
+        section.id,
+        started_ms=START_MS,
+        pulled_ms=pulled_ms,
+        net_kg=0.9 * ideal_kg(section, 7),
+    )
+    keep_books(session)
+
+    hung, gone = (
+        stock_at(session, section, metal_of(section), at_ms) for at_ms in (pulled_ms, pulled_ms + 1)
+    )
+
+    assert hung.kg[0] == pytest.approx(0.9 * ideal_kg(section, 7))
+    assert gone.kg[0] == pytest.approx(0.0, abs=1.0)
+
+
+def test_a_lot_pulled_at_midnight_leaves_both_days_efficient(session, section):
+    midnight_ms = START_MS + 7 * DAY_MS
+    make_lot(
+        session,
+        section.id,
+        cells="1-10",
+        started_ms=START_MS,
+        pulled_ms=midnight_ms,
+        net_kg=0.9 * 10 * ideal_kg(section, 7),
+    )
+    keep_books(session)
+
+    for from_ms in (midnight_ms - DAY_MS, midnight_ms):
+        account = section_account(session, house(session), "EW1", from_ms, from_ms + DAY_MS)
+
+        assert account.period.current_efficiency == pytest.approx(0.9)
+
+
+def test_a_short_period_is_as_sure_as_the_judgement_of_what_grew_in_it(session, section):
+    for day in (7, 14):
+        make_lot(
+            session,
+            section.id,
+            cells="1-10",
+            started_ms=START_MS + (day - 7) * DAY_MS,
+            pulled_ms=START_MS + day * DAY_MS,
+            net_kg=0.9 * 10 * ideal_kg(section, 7),
+        )
+    keep_books(session)
+    from_ms = START_MS + 19 * DAY_MS
+
+    account = section_account(session, house(session), "EW1", from_ms, from_ms + DAY_MS)
+
+    assert 0.015 < account.period.u_current_efficiency < 0.025
+
+
+def test_a_cell_without_recent_crops_shows_no_efficiency(session, section):
+    keep_books(session)
+
+    stock = stock_at(session, section, metal_of(section), NOW_MS)
+
+    assert np.isnan(stock.shown_efficiency).all()
+    assert stock.kg[0] == pytest.approx(0.93 * ideal_kg(section, 30))

@@ -11,7 +11,7 @@ from server.intake.cells import parse_cells
 from server.intake.history import REACH_MS, Readings
 from server.intake.yardstick import IDLE_SHARE, Currents, is_working, yardstick
 from server.science.spread import median, robust_sd
-from server.storage.current import effective_outages, samples_between
+from server.storage.current import effective_outages, samples_beside, samples_between
 from server.storage.latest import latest
 from server.storage.plant import SectionPlan, SectionTerms
 from server.storage.readings_before import last_believed
@@ -29,8 +29,6 @@ _LAST_READINGS = 12
 _LEAST_FOR_A_LEVEL = 3
 _LEAST_FOR_OWN_NOISE = 8
 """With fewer readings of a cell the section's noise is taken for its own."""
-
-_CURRENT_REACH_MS = 28 * 86_400_000
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,7 +91,8 @@ def round_sheet(session: Session, plan: SectionPlan, at_ms: int, max_hold_ms: in
                 bypassed_since_ms=bypassed.get(number),
             )
         )
-    sampled_ms, amps = samples_between(session, plan.id, at_ms - _CURRENT_REACH_MS, at_ms + 1)
+    last_ms, _ = samples_beside(session, plan.id, at_ms + 1, at_ms + 1)
+    sampled_ms, amps = samples_between(session, plan.id, last_ms, at_ms + 1)
     return RoundSheet(
         section=plan.name,
         at_ms=at_ms,

@@ -22,6 +22,7 @@ from server.web.dependencies import (
 from server.web.i18n import gettext as _
 from server.web.render import page
 from server.web.sheet_words import sheet_name, source_name
+from server.web.typed import one_line
 
 router = APIRouter(include_in_schema=False)
 
@@ -52,7 +53,8 @@ def delivery_withdraw(
     why: Why = "",
 ) -> Response:
     """Take back what a delivery brought; it stays on record with who, when and why."""
-    if not why.strip():
+    why = one_line(why)
+    if not why:
         faults = {"why": _("Say why it is taken back.")}
         return _page(request, who, db, delivery_id, faults)
     delivery(db, delivery_id)
@@ -77,9 +79,10 @@ def delivery_drop_held(
 ) -> Response:
     """Drop every row of a delivery that is still held, for one reason."""
     delivery(db, delivery_id)
-    if not why_drop.strip():
+    why_drop = one_line(why_drop)
+    if not why_drop:
         return _page(request, who, db, delivery_id, {"why_drop": _("Say why they are dropped.")})
-    drop_held_of(db, delivery_id, who.sender, why_drop.strip(), now_ms)
+    drop_held_of(db, delivery_id, who.sender, why_drop, now_ms)
     return RedirectResponse(request.url_for("delivery", delivery_id=delivery_id).path, 303)
 
 

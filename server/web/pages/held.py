@@ -27,9 +27,11 @@ from server.web.i18n import gettext as _
 from server.web.render import page
 from server.web.sentences import sentence_of
 from server.web.sheet_words import sheet_name
+from server.web.typed import one_line, whole_numbers
 from server.web.uploads import FormFields
 
 ON_ONE_PAGE = 25
+_LONGEST_VALUE = 4000
 
 router = APIRouter(include_in_schema=False)
 
@@ -80,8 +82,8 @@ def held_drop_ticked(
     request: Request, who: Superintendent, form: FormFields, db: WriteSession, now_ms: Now
 ) -> Response:
     """Drop the rows that were ticked, all for one reason."""
-    why = str(form.get("why", "")).strip()
-    ticked = [int(str(value)) for value in form.getlist("row") if str(value).isdecimal()]
+    why = one_line(str(form.get("why", "")))
+    ticked = whole_numbers(form.getlist("row"))
     if not ticked or not why:
         fault = _("Say why they are dropped.") if ticked else _("Tick the rows to be dropped.")
         tried = Tried(why=why, fault=fault, ticked=frozenset(ticked))
@@ -102,10 +104,11 @@ def held_drop(
     why: Why = "",
 ) -> Response:
     """Drop one row."""
+    why = one_line(why)
     try:
         drop(db, held_id, who.sender, why, now_ms)
     except Conflict as error:
-        fault = _("Say why it is dropped.") if not why.strip() else sentence_of(error)
+        fault = sentence_of(error) if why else _("Say why it is dropped.")
         return _page(request, who, db, Shown(), Tried(held_id, why=why, fault_of_dropping=fault))
     return RedirectResponse(f"{request.url_for('held').path}?done=dropped", 303)
 
@@ -123,11 +126,11 @@ def held_mend(
 ) -> Response:
     """Take a row in as it should have been; it stays held where something is still wrong."""
     fields = {
-        name.removeprefix("f-"): str(value).strip()
+        name.removeprefix("f-"): one_line(str(value), _LONGEST_VALUE)
         for name, value in form.multi_items()
         if name.startswith("f-")
     }
-    reason = str(form.get("reason", "")).strip()
+    reason = one_line(str(form.get("reason", "")))
     try:
         result = mend(db, house, held_id, fields, who.sender, now_ms, site.settings, reason)
     except Conflict as error:

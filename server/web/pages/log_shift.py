@@ -28,7 +28,9 @@ from server.web.dependencies import (
 )
 from server.web.errors import SignInNeeded
 from server.web.render import page
+from server.web.round_words import fault_words
 from server.web.site import Site
+from server.web.typed import whole_number
 from server.web.uploads import FormFields
 
 router = APIRouter(include_in_schema=False)
@@ -127,9 +129,10 @@ def _by_cell(form: FormData, name: str) -> dict[int, str]:
     """The fields of one name for each cell, `volts-12`, by the number of the cell."""
     found = {}
     for key, value in form.multi_items():
-        start, _dash, number = key.partition("-")
-        if start == name and number.isascii() and number.isdecimal() and len(number) < 7:
-            found[int(number)] = str(value)
+        start, _dash, text = key.partition("-")
+        number = whole_number(text)
+        if start == name and number is not None:
+            found[number] = str(value)
     return found
 
 
@@ -189,6 +192,7 @@ def _page(
         "at": typed.at[:16] or now_ms,
         "outcome": outcome,
         "saved": saved,
+        "fault_words": fault_words,
     }
     return page(request, "log_shift.html", context, status_code=status)
 

@@ -3,7 +3,7 @@
 from dataclasses import dataclass, field
 from typing import Annotated
 
-from fastapi import APIRouter, Form, Request
+from fastapi import APIRouter, Form, Path, Request
 from sqlalchemy.orm import Session
 from starlette.responses import RedirectResponse, Response
 
@@ -28,11 +28,13 @@ from server.web.i18n import gettext as _
 from server.web.render import page
 from server.web.role_words import role_choices, role_meaning, role_name
 from server.web.security import new_password, new_token, token_hash
+from server.web.typed import one_line
 
 _LONGEST_NAME = 60
 _ONCE = {"cache-control": "no-store"}
 Faults = dict[str, str]
 Text = Annotated[str, Form()]
+RowId = Annotated[int, Path(ge=1, lt=2**53)]
 
 router = APIRouter(include_in_schema=False)
 
@@ -66,7 +68,7 @@ def person_add(
     role: Text = "",
 ) -> Response:
     """Add somebody; their password is made here and shown once."""
-    name, password = " ".join(name.split()), new_password()
+    name, password = one_line(name, _LONGEST_NAME + 1), new_password()
     kept = site.passwords.hashed(password)
     with site.database.write() as session:
         faults = _faults("name", name, "role", role)
@@ -83,7 +85,7 @@ def person_add(
 @router.post("/people/{person_id}", name="person_change")
 def person_change(
     request: Request,
-    person_id: int,
+    person_id: RowId,
     _who: Superintendent,
     site: ThisSite,
     action: Text = "",
@@ -111,7 +113,7 @@ def token_add(
     token_role: Text = "",
 ) -> Response:
     """Make a token for a program; it is shown once."""
-    name, token = " ".join(token_name.split()), new_token()
+    name, token = one_line(token_name, _LONGEST_NAME + 1), new_token()
     faults = _faults("token_name", name, "token_role", token_role)
     try:
         if not faults:
@@ -125,7 +127,7 @@ def token_add(
 
 @router.post("/tokens/{token_id}/revoke", name="token_revoke")
 def token_revoke(
-    request: Request, token_id: int, _who: Superintendent, db: WriteSession, now_ms: Now
+    request: Request, token_id: RowId, _who: Superintendent, db: WriteSession, now_ms: Now
 ) -> Response:
     """Make a token good for nothing."""
     revoke_token(db, token_id, now_ms)
@@ -171,7 +173,7 @@ def _faults(name_field: str, name: str, role_field: str, role: str) -> Faults:
     faults = {}
     if not name:
         faults[name_field] = _("A name is needed.")
-    elif len(name) > _LONGEST_NAME or not name.isprintable():
+    elif len(name) > _LONGEST_NAME:
         faults[name_field] = _("Use at most %(most)d letters and signs.") % {"most": _LONGEST_NAME}
     if role not in ROLES:
         faults[role_field] = _("Choose a role.")

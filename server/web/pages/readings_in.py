@@ -18,9 +18,11 @@ from server.web.render import page
 from server.web.sheet_words import sheet_name, source_name
 from server.web.site import Site
 from server.web.spooled import spool_of
+from server.web.typed import one_line, whole_numbers
 from server.web.uploads import Uploads
 
 ON_ONE_PAGE = 30
+_LONGEST_NAME = 200
 
 router = APIRouter(include_in_schema=False)
 
@@ -75,7 +77,7 @@ def _page(
         "may_send": who.may("operator"),
         "held": sum(held_counts(session).values()),
         "suspects": suspect_count(session),
-        "taken": deliveries_with(session, _numbers(taken)) if taken else [],
+        "taken": deliveries_with(session, whole_numbers(taken.split(","))) if taken else [],
         "deliveries": shown,
         "still_held": still_held(session, ids),
         "still_doubted": still_doubted(session, ids),
@@ -92,9 +94,4 @@ def _page(
 
 def _bare(name: str) -> str:
     """A file's own name, without the folders that some browsers send with it."""
-    return re.split(r"[/\\]", name)[-1][:200]
-
-
-def _numbers(text: str) -> list[int]:
-    """The numbers of a list such as '12,13'; what is none is left out."""
-    return [int(part) for part in text.split(",") if part.isdecimal() and len(part) < 16]
+    return one_line(re.split(r"[/\\]", name)[-1], _LONGEST_NAME)

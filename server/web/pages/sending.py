@@ -22,6 +22,7 @@ from server.web.i18n import gettext as _
 from server.web.render import page
 from server.web.sheet_words import sheet_name
 from server.web.spooled import spool_of
+from server.web.typed import one_line
 
 router = APIRouter(include_in_schema=False)
 
@@ -50,7 +51,7 @@ def sending_look(
     """Look through a sending again, as corrections of what is stored or as new records."""
     spool = spool_of(site)
     ticket = spool.waiting(ticket_id, who.sender, now_ms)
-    why = " ".join(reason.split()) if kind == "corrections" else ""
+    why = one_line(reason) if kind == "corrections" else ""
     if kind == "corrections" and not why:
         fault = _("Say why what is stored is to be corrected.")
         return _page(request, who, ticket, fault, 422)

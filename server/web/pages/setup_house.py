@@ -19,6 +19,7 @@ from server.web.plant_form import PlantField, faults_by_field, from_suggested, v
 from server.web.refusals import Refused
 from server.web.render import page
 from server.web.sentences import sentence_of
+from server.web.typed import one_line
 from server.web.uploads import FormFields
 
 MOST_SHIFTS = 6
@@ -45,7 +46,7 @@ def setup_house_change(
     now_ms: Now,
 ) -> Response:
     """Let the tankhouse be another from a date on."""
-    typed = {name: str(value) for name, value in form.multi_items()}
+    typed = {name: one_line(str(value), 4000) for name, value in form.multi_items()}
     faults = _change(db, house, typed, who.sender, now_ms)
     if faults:
         return _page(request, who, house, now_ms, typed, faults)
@@ -61,7 +62,7 @@ def _change(
     changes = {key: value for key, value in wanted.items() if value != former[key]}
     if not changes:
         return {"": _("Nothing differs from what holds now.")}
-    if not typed.get("why", "").strip():
+    if not typed.get("why"):
         return {"why": _("Say why it changes.")}
     try:
         from_ms = moment_of(typed.get("from", ""), house, "form.from")

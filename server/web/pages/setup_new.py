@@ -25,6 +25,7 @@ from server.web.plant_form import (
 )
 from server.web.render import page
 from server.web.sentences import sentence_of
+from server.web.typed import one_line
 from server.web.uploads import FormFields
 
 OTHER = "other"
@@ -55,7 +56,7 @@ def setup_new_send(
     now_ms: Now,
 ) -> Response:
     """Add a section."""
-    typed = {name: str(value) for name, value in form.multi_items()}
+    typed = {name: one_line(str(value), 4000) for name, value in form.multi_items()}
     faults = _add(db, typed, who.sender, now_ms)
     if faults:
         return _page(request, house, typed, faults)
@@ -66,7 +67,7 @@ def setup_new_send(
 
 def _add(session: Session, typed: Mapping[str, str], who: str, now_ms: int) -> dict[str, str]:
     """Add the section; answers what is wrong, by field."""
-    if not typed.get("why", "").strip():
+    if not typed.get("why"):
         return {"why": _("Say why it is added.")}
     own = {
         field.key: value_of(field, typed.get(field.key, ""))

@@ -26,6 +26,7 @@ from server.web.plant_form import (
 from server.web.refusals import Refused
 from server.web.render import page
 from server.web.sentences import sentence_of
+from server.web.typed import one_line
 from server.web.uploads import FormFields
 
 router = APIRouter(include_in_schema=False)
@@ -56,7 +57,7 @@ def setup_section_change(
 ) -> Response:
     """Let a section be another from a date on."""
     plan = house.section(section_name)
-    typed = {name: str(value) for name, value in form.multi_items()}
+    typed = {name: one_line(str(value), 4000) for name, value in form.multi_items()}
     faults = _change(db, house, plan, typed, who.sender, now_ms)
     if faults:
         return _page(request, who, house, plan, now_ms, typed, faults)
@@ -76,7 +77,7 @@ def _change(
     changes = changes_of(typed, as_typed(section_fields(plan, now_ms)))
     if not changes:
         return {"": _("Nothing differs from what holds now.")}
-    if not typed.get("why", "").strip():
+    if not typed.get("why"):
         return {"why": _("Say why it changes.")}
     try:
         from_ms = moment_of(typed.get("from", ""), house, "form.from")

@@ -28,6 +28,7 @@ from server.web.i18n import ngettext
 from server.web.render import page
 from server.web.sentences import sentence_of
 from server.web.sheet_words import source_name
+from server.web.typed import one_line, whole_number, whole_numbers
 from server.web.uploads import FormFields
 
 ON_ONE_PAGE = 50
@@ -104,12 +105,13 @@ def suspects_decide(
 
 def _decided(form: FormData) -> Decided:
     volts = {
-        int(name.removeprefix("volts-")): str(value).strip()
+        number: str(value).strip()
         for name, value in form.multi_items()
-        if name.startswith("volts-") and name.removeprefix("volts-").isdecimal()
+        if name.startswith("volts-")
+        and (number := whole_number(name.removeprefix("volts-"))) is not None
     }
-    ids = tuple(int(str(value)) for value in form.getlist("reading") if str(value).isdecimal())
-    return Decided(str(form.get("decision", "")), str(form.get("why", "")).strip(), ids, volts)
+    ids = tuple(whole_numbers(form.getlist("reading")))
+    return Decided(str(form.get("decision", "")), one_line(str(form.get("why", ""))), ids, volts)
 
 
 def _faults(decided: Decided) -> dict[int, str]:

@@ -29,7 +29,7 @@ from tests.fixtures.served import LiveServer
 from tests.source import ROOT
 
 PERSON = "ines"
-README_PICTURE = ROOT / "static" / "pictures" / "section.png"
+README_PICTURE = ROOT / "tests" / "pictures" / "section.png"
 PLAIN_PAGES = (
     "/", "/sections", "/lots", "/log-shift", "/readings-in", "/readings-in/held",
     "/readings-in/suspects", "/setup", "/people", "/me", "/api",

@@ -1,0 +1,1 @@
+"""Pictures of the program, and how they are taken."""

@@ -24,6 +24,7 @@ from server.intake.history import (
 from server.intake.row_slip import LOG_RATIO, MOST_FROM_ONE, SHORTEST, row_slip
 from server.intake.verdicts import Given
 from server.intake.yardstick import Currents, Yardstick, is_working, yardstick
+from server.science.uncertainty import standard_from_limit
 from server.storage.plant import SectionPlan
 from server.storage.walk import walking_order
 
@@ -32,6 +33,10 @@ _LEAST_IN_A_ROUND = 3
 
 _LEAST_OF_A_CELL = 12
 """Readings from which a cell's own noise is told; with fewer, the section's is taken."""
+
+_USUAL_DECIMALS, _NEARLY_ALL, _DUST = 3, 0.9, 1e-6
+"""Meters show millivolts; some plants write down less. By chance one reading in ten ends in a
+zero, so that nine in ten have to."""
 
 _LARGEST_FALL, _LARGEST_RISE = -0.75, 0.5
 """A section that is cut to a quarter of its current loses less than three quarters of its
@@ -83,6 +88,7 @@ class _Judgement:
         self._terms = terms
         self._working = working
         self._volts = np.where(working, readings.volts, np.nan)
+        self._decimals = _decimals_of(readings.volts)
         self._rounds = by_round(readings)
         known_amps = np.where(np.isnan(amps), terms.rated_amps, amps)
         self._follows_v = terms.resistance_ohm * known_amps
@@ -105,13 +111,18 @@ class _Judgement:
         return np.where(is_possible, moved, 0.0)[self._rounds.group]
 
     def _noise(self) -> Numbers:
-        """Standard deviation of an honest reading of each cell, at the least the meter's own."""
+        """Standard deviation of an honest reading of each cell.
+
+        At the least it is the meter's own, and that of rounding to the digits written down.
+        """
         size = np.abs(self._volts - self._expected_v)
         is_known = np.isfinite(size)
         of_section = float(np.median(size[is_known])) if is_known.any() else 0.0
         of_cell = by_cell(self._readings).medians(size, _LEAST_OF_A_CELL)
         spread = np.where(np.isnan(of_cell), of_section, of_cell) * _MAD_TO_STANDARD
-        return np.maximum(spread[self._readings.number], self._terms.meter_u_v)
+        rounding = standard_from_limit(0.5 / 10.0**self._decimals)
+        least = np.maximum(self._terms.meter_u_v, rounding)
+        return np.maximum(spread[self._readings.number], least)
 
     def _previous(self) -> Numbers:
         """The cell's reading before each, referred to the current and the round of this one."""
@@ -151,6 +162,7 @@ class _Judgement:
             terms.low_volts[places],
             terms.high_volts[places],
             previous_volts=self._previous_v[places],
+            decimals=self._decimals,
             resistive_share=terms.resistive_share[places],
         )
 
@@ -208,6 +220,16 @@ class _Judgement:
             order[starts[number] : starts[number] + size[number]]
             for number in np.flatnonzero(is_wanted).tolist()
         ]
+
+
+def _decimals_of(volts: Numbers) -> int:
+    """How many decimals are written down, as nearly all of the readings show."""
+    if len(volts) >= _LEAST_OF_A_CELL:
+        for decimals in range(1, _USUAL_DECIMALS):
+            scaled = volts * 10.0**decimals
+            if np.mean(np.abs(scaled - np.rint(scaled)) < _DUST) > _NEARLY_ALL:
+                return decimals
+    return _USUAL_DECIMALS
 
 
 def _misfit(volts: Numbers, expected: Numbers, noise: Numbers) -> Numbers:

@@ -72,6 +72,16 @@ def test_a_slip_is_stored_and_left_out_until_somebody_decides(known, entered, co
     assert len(stored.believed()) == len(stored) - 1
 
 
+def test_readings_are_told_with_the_decimals_that_are_written_down(books):
+    coarse = [round(level, 2) for level in LEVELS]
+    books.file(as_csv([r | {"volts": coarse[r["cell"] - 1]} for r in rounds("EW1", coarse, 10)]))
+
+    result = books.record("volts", at=iso(NOW_MS), section="EW1", cell=3, volts=199)
+
+    assert result.status == "suspect"
+    assert "expected about 1.99 V" in result.reason
+
+
 def test_what_is_doubted_is_no_yardstick_for_the_next(known):
     for day in range(6):
         volts = [*LEVELS]

@@ -96,7 +96,11 @@ def test_a_file_goes_in_from_the_desk_and_from_the_tablet(
         browser_page.goto(f"{live_server}/readings-in")
         faults = accessibility_faults(browser_page)
         browser_page.set_input_files(
-            "input[type=file]", {"name": "night.csv", "mimeType": "text/csv", "buffer": VOLTS}
+            "input[type=file]",
+            [
+                {"name": name, "mimeType": "text/csv", "buffer": VOLTS}
+                for name in ("night.csv", "day.csv")
+            ],
         )
         browser_page.locator("form.send button").click()
         browser_page.wait_for_url("**/sent/**")

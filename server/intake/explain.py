@@ -59,6 +59,11 @@ PATTERNS: dict[SuspicionCode, str] = {
     ),
 }
 
+SLIP_WITHOUT_VALUE = (
+    "Found {found} V, expected {expected} V; this stretch of the round fits one line {direction},"
+    " where this cell was not read."
+)
+
 
 def sentence(
     code: SuspicionCode,
@@ -85,6 +90,8 @@ def sentence(
         expected = "the reading of a cell"
     suggested = number(suggested_volts) if math.isfinite(suggested_volts) else None
     pattern = PATTERNS.get(code, "{found} V is as expected.")
+    if code == SuspicionCode.ROW_SLIP and suggested is None:
+        pattern = SLIP_WITHOUT_VALUE
     reason = pattern.format(
         found=found, expected=expected, suggested=suggested, direction=direction
     )

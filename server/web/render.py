@@ -15,6 +15,7 @@ from starlette.templating import Jinja2Templates
 
 from server.figures.encode import as_json
 from server.settings import STATIC, TEMPLATES
+from server.storage.people import ROLES
 from server.web import filters, i18n
 from server.web.static_files import StaticShelf
 
@@ -31,6 +32,10 @@ class Frame:
     role: str = ""
     form_token: Callable[[], str] = str
     """Gives a token for one form; each call under another mask."""
+
+    def may(self, role: str) -> bool:
+        """Whether the person may do what takes that role: what they may not is not offered."""
+        return self.role in ROLES and ROLES.index(self.role) >= ROLES.index(role)
 
 
 def page(

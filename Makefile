@@ -1,6 +1,6 @@
 # Each command makes ready what it needs by itself; see .ci/environment.
 .DEFAULT_GOAL := help
-.PHONY: help demo test bench pictures lint format lock upgrade wheel wheelhouse clean
+.PHONY: help demo test bench pictures lint format locale lock upgrade wheel wheelhouse clean
 
 PYTHON := .venv/bin/python
 
@@ -11,6 +11,7 @@ help:
 	@echo "make pictures    every page of the demo, at a desk and on a phone, into build/pictures/"
 	@echo "make lint        formatter, linter and type checker"
 	@echo "make format      let the formatter decide"
+	@echo "make locale      the texts of the pages into the catalogues of every language"
 	@echo "make lock        the lock files anew, after pyproject.toml changed"
 	@echo "make upgrade     the lock files with everything at its newest"
 	@echo "make wheel       the package, into dist/"
@@ -44,6 +45,11 @@ format:
 	@.ci/environment dev
 	@$(PYTHON) -m ruff format .
 	@$(PYTHON) -m ruff check --fix .
+
+locale:
+	@.ci/environment dev
+	@$(PYTHON) -m babel.messages.frontend --quiet extract
+	@$(PYTHON) -m babel.messages.frontend --quiet update
 
 lock:
 	@.ci/environment lock

@@ -9,11 +9,14 @@ from contextlib import contextmanager
 from contextvars import ContextVar
 from dataclasses import dataclass
 from functools import lru_cache
+from io import BytesIO
 from pathlib import Path
 from typing import Any, NamedTuple
 
 from babel import Locale, UnknownLocaleError, negotiate_locale
 from babel.dates import get_day_names, get_month_names
+from babel.messages.mofile import write_mo
+from babel.messages.pofile import read_po
 from babel.numbers import get_decimal_symbol
 from babel.support import NullTranslations, Translations
 from starlette.requests import HTTPConnection
@@ -74,7 +77,7 @@ def npgettext(context: str, one: str, many: str, count: int) -> str:
 @lru_cache
 def languages() -> tuple[str, ...]:
     """Every language there is a catalogue for, the language of the source first."""
-    found = (path.parent.parent.name for path in LOCALE_FOLDER.glob(f"*/LC_MESSAGES/{DOMAIN}.mo"))
+    found = (path.parent.parent.name for path in LOCALE_FOLDER.glob(f"*/LC_MESSAGES/{DOMAIN}.po"))
     return (SOURCE_LANGUAGE, *sorted(set(found) - {SOURCE_LANGUAGE}))
 
 
@@ -173,11 +176,19 @@ class LanguageMiddleware:
 
 @lru_cache
 def _translations(language: str) -> NullTranslations:
-    return Translations.load(LOCALE_FOLDER, [language], DOMAIN)
+    """The catalogue of a language, compiled as it is read: nothing compiled is kept in the tree."""
+    path = LOCALE_FOLDER / language / "LC_MESSAGES" / f"{DOMAIN}.po"
+    if not path.is_file():
+        return NullTranslations()
+    compiled = BytesIO()
+    with path.open("rb") as catalogue:
+        write_mo(compiled, read_po(catalogue, locale(language)))
+    compiled.seek(0)
+    return Translations(compiled, DOMAIN)
 
 
 def _in_order(accepted: str) -> list[str]:
-    """Languages of an Accept-Language header, the most wanted first."""
+    """Languages of an Accept-Language header in small letters, the most wanted first."""
     wanted: list[tuple[float, str]] = []
     for part in accepted.split(","):
         name, _, rest = part.strip().partition(";")
@@ -187,5 +198,5 @@ def _in_order(accepted: str) -> list[str]:
         except ValueError:
             continue
         if name and name != "*" and weight > 0:
-            wanted.append((weight, name))
+            wanted.append((weight, name.lower()))
     return [name for _, name in sorted(wanted, key=lambda pair: -pair[0])]

@@ -23,8 +23,8 @@ from server.storage.recorded import last_recorded_ms
 from server.watch.worklist import worklist
 from server.web.dependencies import DbSession, Now, Reader, ThisHouse, ThisSite
 from server.web.filters import no_data, number
-from server.web.i18n import gettext as _
 from server.web.pages import words
+from server.web.pages.account_words import account_words
 from server.web.pages.floor_words import floor_sentence, needle_words
 from server.web.pages.period import ChosenPeriod, chosen_period
 from server.web.pages.section_trends import section_trends
@@ -111,7 +111,7 @@ def _view(
         ],
         "digits": digits,
         "needle_words": needle_words,
-        "translated": _,
+        "translated": account_words,
         **WORDS,
     }
 

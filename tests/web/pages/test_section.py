@@ -57,7 +57,7 @@ def test_every_figure_shows_how_it_was_worked_out(client, session):
 
     said = words_of(page)
     assert "Metal for each kiloampere-hour, K 1.18549 kg/kAh K = M / (z F)" in said
-    assert ["M", "63.5460", "g/mol", "IUPAC abridged weight"] in rows_of(
+    assert ["M", "63.5460", "g/mol", "IUPAC standard atomic weight"] in rows_of(
         page, "Inputs of: Metal for each kiloampere-hour, K"
     )
 

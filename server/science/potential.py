@@ -49,8 +49,8 @@ STANDARD_POTENTIALS_V: dict[tuple[str, int], float] = {
 OXYGEN_WATER_V = 1.229
 # Same table: Fe3+ + e = Fe2+, looked up in the textbook's appendix.
 FERRIC_FERROUS_V = 0.771
-# Public course notes on the decomposition of alumina (looked up): with a carbon anode that burns away,
-# near 960 degC; textbooks say 1.2 V (from memory).
+# Public course notes on the decomposition of alumina (looked up): with a carbon anode that burns
+# away, near 960 degC; textbooks say 1.2 V (from memory).
 ALUMINA_CARBON_VOLTS = 1.19
 
 

@@ -4,6 +4,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 from sqlalchemy.orm import Session
 
 from server.accounts.charge import ChargeRecord, charge_record, rebuild_charge
@@ -172,10 +173,18 @@ def _energy(
                 measured_c,
                 None if np.isnan(energy_j) else energy_j,
                 day.hours.tobytes(),
-                day.cells.tobytes(),
+                _filled(day.cells).tobytes(),
             )
         )
     keep_energy_days(session, section.id, day_from, day_to, rows)
+
+
+def _filled(cells: NDArray[np.float64]) -> NDArray[np.float64]:
+    """The cells up to the last that received any charge.
+
+    So that a day is packed alike before and after cells are added to the section.
+    """
+    return cells[: int(np.max(np.flatnonzero(cells[:, 0]), initial=-1)) + 1]
 
 
 def _watch(session: Session, section: SectionPlan, from_ms: int, to_ms: int, hand: _AtHand) -> None:

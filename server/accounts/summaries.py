@@ -123,7 +123,11 @@ def _summed(
 
 
 def _packed(table: NDArray[np.void], is_single: bool) -> bytes:
-    """The cells of a summary as bytes: the readings alone where no cell was read twice."""
+    """The cells of a summary as bytes, up to the last that was read.
+
+    The readings alone where no cell was read twice.
+    """
+    table = table[: int(np.flatnonzero(table["readings"])[-1]) + 1]
     if not is_single:
         return _WHOLE + table.tobytes()
     return (
@@ -132,7 +136,7 @@ def _packed(table: NDArray[np.void], is_single: bool) -> bytes:
 
 
 def unpacked(cells: bytes) -> NDArray[np.void]:
-    """The cells of a packed summary, in the order of their numbers."""
+    """The cells of a packed summary by number, up to the last that was read."""
     if cells[:1] == _WHOLE:
         return np.frombuffer(cells, CELL_SUMMARY, offset=1)
     read_uv = np.frombuffer(cells, "<i4", offset=1)

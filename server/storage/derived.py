@@ -75,7 +75,7 @@ class EnergyDay(Base):
     hours: Mapped[bytes] = mapped_column(Bytes)
     """float64, 24 x (charge_c, cell_charge_c, measured_charge_c, energy_j)."""
     cells: Mapped[bytes] = mapped_column(Bytes)
-    """float64, cells x (charge_c, energy_j)."""
+    """float64, cells x (charge_c, energy_j), up to the last cell that received charge."""
 
 
 class Summary(Base):

@@ -136,7 +136,7 @@ def energy_hours(
 def energy_cells(
     session: Session, section_id: int, day_from: int, day_to: int
 ) -> list[tuple[int, NDArray[np.float64]]]:
-    """(day, cells x 2 array) of each day's charge and energy by cell."""
+    """(day, cells x 2 array) of each day's charge and energy by cell, up to the last in service."""
     return [
         (int(day), np.frombuffer(cells, np.float64).reshape(-1, 2))
         for day, cells in fetch_rows(

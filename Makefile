@@ -23,7 +23,7 @@ demo:
 
 test:
 	@.ci/environment dev
-	@.ci/environment chromium
+	@.ci/environment browser
 	@$(PYTHON) -m pytest -n logical --dist worksteal
 
 bench:
@@ -32,7 +32,7 @@ bench:
 
 pictures:
 	@.ci/environment dev
-	@.ci/environment chromium
+	@.ci/environment browser
 	@$(PYTHON) -m tests.pictures $(if $(README),--readme)
 
 lint:

@@ -6,15 +6,17 @@ import sys
 import sysconfig
 import tomllib
 import zipfile
+from importlib.metadata import packages_distributions
 from pathlib import Path
 
 import pytest
 from packaging.requirements import Requirement
 from packaging.version import Version
 
-from tests.source import ROOT
+from tests.source import ROOT, imports
 
 PROJECT = tomllib.loads((ROOT / "pyproject.toml").read_text(encoding="utf-8"))["project"]
+OURS = {"server", "tests", ""}
 LOCKS = ("requirements.lock", "requirements-dev.lock")
 
 
@@ -25,6 +27,11 @@ def run(*command: str | Path, cwd: Path) -> str:
     )
     assert done.returncode == 0, done.stdout + done.stderr
     return done.stdout
+
+
+def plain_name(name: str) -> str:
+    """A distribution's name in its one spelling."""
+    return re.sub("[-_.]+", "-", name).lower()
 
 
 def locked(name: str) -> dict[str, Version]:
@@ -135,6 +142,26 @@ def test_the_locks_hold_what_the_package_asks_for():
         versions = locked(name)
         for requirement in map(Requirement, requirements):
             assert versions[requirement.name] in requirement.specifier, f"{name}: {requirement}"
+
+
+@pytest.mark.parametrize(
+    ("folder", "extras"), [("server", ["postgresql"]), ("tests", ["postgresql", "dev"])]
+)
+def test_what_is_imported_is_asked_for(folder, extras):
+    asked = [*PROJECT["dependencies"]]
+    for extra in extras:
+        asked += PROJECT["optional-dependencies"][extra]
+    names = {plain_name(Requirement(requirement).name) for requirement in asked}
+    homes = packages_distributions()
+
+    strangers = {
+        f"{found.place}: {top}"
+        for found in imports(ROOT / folder)
+        if not found.is_relative
+        and (top := found.imported.split(".")[0]) not in {*sys.stdlib_module_names, *OURS}
+        and not names & {plain_name(home) for home in homes.get(top, ())}
+    }
+    assert strangers == set()
 
 
 def test_what_is_tested_is_what_is_deployed():

@@ -29,7 +29,7 @@ class Suspicion:
     suggested: str | None
 
 
-# English; pages translate the pattern and fill it in.
+# English: what is said of a reading is stored with it.
 PATTERNS: dict[SuspicionCode, str] = {
     SuspicionCode.SLIPPED_UNIT: (
         "Found {found} V, expected {expected} V; in the right unit it is {suggested} V."

@@ -1,4 +1,4 @@
-"""The sentences of every refusal, by their code, in English; pages translate them when shown.
+"""The sentences of every refusal, by their code, in English: they are stored as they were said.
 
 Placeholders: `column`, `found`, `expected`, and `line` for files.
 """

@@ -37,6 +37,25 @@ def fetch_columns(
         cursor.close()
 
 
+def fetch_each(
+    session: Session,
+    sql: str,
+    parameters: Iterable[Sequence[Any]],
+    columns: Sequence[tuple[str, str]],
+) -> list[NDArray[np.void]]:
+    """Rows of one query for each set of parameters; quicker than one long query with a key."""
+    cursor, sql = _cursor(session, sql)
+    dtype = np.dtype(list(columns))
+    try:
+        found = []
+        for each in parameters:
+            cursor.execute(sql, each)
+            found.append(np.fromiter(cursor, dtype=dtype))
+        return found
+    finally:
+        cursor.close()
+
+
 def insert_rows(session: Session, sql: str, rows: Iterable[Sequence[Any]]) -> int:
     """Insert many rows with one statement; answers how many went in."""
     cursor, sql = _cursor(session, sql)

@@ -13,18 +13,15 @@ from numpy.typing import NDArray
 from sqlalchemy.orm import Mapped, Session, mapped_column
 
 from server.storage.base import CLUSTERED, Base, Small, Whole
-from server.storage.direct import fetch_columns, fetch_rows, insert_rows, marks
+from server.storage.direct import fetch_each, fetch_rows, insert_rows, marks
 
 _UNKNOWN_UV = -(2**62)
 _DOUBTS = 256
 """Suspect codes are below this: voltage and doubt travel as one number."""
 
 _WITHDRAWN_UV = -(2**50)
-_SELECT = (
-    f"SELECT cell_id, at_ms, COALESCE(microvolts, {_WITHDRAWN_UV}) * {_DOUBTS} + suspect"
-    " FROM reading "
-)
-_SELECTED = (("cell_id", "i8"), ("at_ms", "i8"), ("told", "i8"))
+_TOLD = f"COALESCE(microvolts, {_WITHDRAWN_UV}) * {_DOUBTS} + suspect"
+_SELECTED = (("at_ms", "i8"), ("told", "i8"))
 
 
 class Reading(Base):
@@ -79,21 +76,15 @@ class Series:
         return self.where(self.suspect == 0)
 
 
-def _effective(rows: NDArray[np.void]) -> Series:
+def _effective(
+    cell_id: NDArray[np.int64], at_ms: NDArray[np.int64], told: NDArray[np.int64]
+) -> Series:
     """Of each cell and moment the highest revision, unless it withdraws the reading."""
-    cell_id, at_ms = rows["cell_id"], rows["at_ms"]
-    told = rows["told"]
     microvolts = told >> 8
     keep = microvolts != _WITHDRAWN_UV
     keep[:-1] &= (cell_id[1:] != cell_id[:-1]) | (at_ms[1:] != at_ms[:-1])
-    if keep.all():
-        keep = np.s_[:]
-    return Series(
-        np.ascontiguousarray(cell_id[keep]),
-        np.ascontiguousarray(at_ms[keep]),
-        microvolts[keep],
-        told[keep] & (_DOUBTS - 1),
-    )
+    series = Series(cell_id, at_ms, microvolts, told & (_DOUBTS - 1))
+    return series if keep.all() else series.where(keep)
 
 
 def between(
@@ -107,21 +98,25 @@ def between(
 
     `known_ms` asks for what was known at an earlier moment: later deliveries are left out.
     """
-    if not cell_ids:
-        return _effective(np.empty(0, list(_SELECTED)))
-    known = ""
-    parameters: list[int] = [*cell_ids, from_ms, to_ms]
+    known: str = ""
+    moment: tuple[int, ...] = ()
     if known_ms is not None:
         known = " AND delivery_id IN (SELECT id FROM delivery WHERE received_ms <= ?)"
-        parameters.append(known_ms)
-    rows = fetch_columns(
+        moment = (known_ms,)
+    ids = sorted(set(cell_ids))
+    found = fetch_each(
         session,
-        f"{_SELECT} WHERE cell_id IN ({marks(len(cell_ids))}) AND at_ms >= ? AND at_ms < ?{known}"
-        " ORDER BY cell_id, at_ms, revision",
-        parameters,
+        f"SELECT at_ms, {_TOLD} FROM reading WHERE cell_id = ? AND at_ms >= ? AND at_ms < ?{known}"
+        " ORDER BY at_ms, revision",
+        [(cell_id, from_ms, to_ms, *moment) for cell_id in ids],
         _SELECTED,
     )
-    return _effective(rows)
+    rows = np.concatenate(found) if found else np.empty(0, list(_SELECTED))
+    return _effective(
+        np.repeat(np.array(ids, np.int64), [len(own) for own in found]),
+        np.ascontiguousarray(rows["at_ms"]),
+        np.ascontiguousarray(rows["told"]),
+    )
 
 
 def cells_recorded(

@@ -27,7 +27,7 @@ _FAR_MS = 2**60
 _AROUND_MS = 2 * REACH_MS + DAY_MS
 """A changed reading bends days as far as it reaches, and these need what reaches into them."""
 
-BLOCK_MS = 183 * DAY_MS
+BLOCK_MS = 366 * DAY_MS
 """The longest stretch that is worked out in one transaction."""
 
 _ORDER: tuple[Kind, ...] = ("charge", "readings", "energy", "flags", "lots")

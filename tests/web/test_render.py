@@ -45,7 +45,7 @@ def test_templates_know_language_zone_and_marks():
     with speaking("es", "America/Santiago"):
         page = written("{{ language() }} {{ zone() }} {{ mark('low') }} {{ no_data() }}")
 
-    assert page == "es America/Santiago ▼ no data"
+    assert page == "es America/Santiago ▼ sin datos"
 
 
 @pytest.mark.parametrize(

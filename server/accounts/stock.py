@@ -14,7 +14,7 @@ from server.accounts.periods import DAY_MS
 from server.science.constants import Metal
 from server.science.faraday import equivalent_kg_c
 from server.storage.current import bypasses_of
-from server.storage.lots import crops_pulled, last_crops_of_cell
+from server.storage.lots import crops_pulled, last_crop_of_each, last_crops_of_cell
 from server.storage.plant import FROM_THE_START_MS, SectionPlan
 
 Numbers = NDArray[np.float64]
@@ -78,9 +78,12 @@ class StockBook:
         self._session = session
         self._section = section
         self._kg_per_c = float(equivalent_kg_c(metal))
-        self._crops = crops_pulled(
-            session, section.id, from_ms - _RECENT_MS, to_ms + _LONGEST_CROP_MS
-        )
+        crops = crops_pulled(session, section.id, from_ms - _RECENT_MS, to_ms + _LONGEST_CROP_MS)
+        # Of a cell that was not pulled lately, the last pull says since when its cathodes hang.
+        lately = set(crops["cell_id"][crops["pulled_ms"] < from_ms].tolist())
+        others = [cell_id for cell_id in section.cell_ids if cell_id not in lately]
+        former = last_crop_of_each(session, others, from_ms - _RECENT_MS)
+        self._crops = np.concatenate((former, crops))
         self._place = np.searchsorted(section.cell_ids, self._crops["cell_id"])
         charge_c = self._crops["charge_c"]
         with np.errstate(divide="ignore", invalid="ignore"):
@@ -122,7 +125,8 @@ class StockBook:
         cathodes = np.append(self._crops["cathodes"], 0)
         kg_per_crop_c = np.append(self._kg_per_crop_c, np.nan)
         last = np.full(cells, -1)
-        last[self._place[recent]] = recent
+        before = np.arange(np.searchsorted(pulled_ms[:-1], at_ms))
+        last[self._place[before]] = before
         ahead = np.full(cells, -1)
         ahead[self._place[later]] = later
         count = np.bincount(self._place[later], minlength=cells)
@@ -144,7 +148,7 @@ class StockBook:
             )
         ]
         for place in np.flatnonzero(~is_usual[:there]).tolist():
-            own = recent[self._place[recent] == place]
+            own = before[self._place[before] == place]
             own_later = later[self._place[later] == place]
             kg_per_c = self._kg_per_c * float(efficiency[place])
             cell = self._unusual(place, own, own_later, terms.cathodes_per_cell, kg_per_c, at_ms)

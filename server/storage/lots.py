@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 from sqlalchemy.orm import Session
 
-from server.storage.direct import execute, fetch_columns, fetch_rows, insert_rows, marks
+from server.storage.direct import execute, fetch_columns, fetch_each, fetch_rows, insert_rows, marks
 
 _CROP = (
     ("cell_id", "i8"),
@@ -87,6 +87,21 @@ def crops_growing(session: Session, section_id: int, from_ms: int, to_ms: int) -
         (section_id, from_ms, to_ms),
         _CROP,
     )
+
+
+def last_crop_of_each(
+    session: Session, cell_ids: Sequence[int], before_ms: int
+) -> NDArray[np.void]:
+    """Of each cell the last crop pulled before a moment, where there is one; by pull."""
+    found = fetch_each(
+        session,
+        f"SELECT {_CROP_COLUMNS} FROM crop WHERE cell_id = ? AND pulled_ms < ?"
+        " ORDER BY pulled_ms DESC, lot_id DESC LIMIT 1",
+        [(cell_id, before_ms) for cell_id in cell_ids],
+        _CROP,
+    )
+    crops = np.concatenate(found) if found else np.empty(0, list(_CROP))
+    return crops[np.argsort(crops["pulled_ms"], kind="stable")]
 
 
 def last_crops_of_cell(

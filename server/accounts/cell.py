@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 from sqlalchemy.orm import Session
 
+from server.accounts.crops import cells_of
 from server.storage.cell_events import corrections_of_cell, finds_of_cell
 from server.storage.current import effective_outages
 from server.storage.plant import House
@@ -58,7 +59,7 @@ def cell_events(
     events = [
         CellEvent(start, end, "outage", "section off" if not cells else state)
         for cells, start, end, state in effective_outages(session, section.id, from_ms, to_ms)
-        if not cells or _holds(cells, cell)
+        if not cells or cell in cells_of(cells)
     ]
     for at_ms, cathode, found, action in finds_of_cell(session, cell_id, from_ms, to_ms):
         where = f" on cathode {cathode}" if cathode else ""
@@ -76,12 +77,3 @@ def cell_events(
             )
         )
     return sorted(events, key=lambda e: -e.at_ms)
-
-
-def _holds(cells: str, cell: int) -> bool:
-    """Whether a stored list such as '1-12;15' holds a cell."""
-    for part in cells.split(";"):
-        first, _, last = part.partition("-")
-        if int(first) <= cell <= int(last or first):
-            return True
-    return False

@@ -3,6 +3,7 @@
 from sqlalchemy.orm import Session
 
 from server.accounts.account import metal_of, section_account
+from server.accounts.crops import cells_of
 from server.accounts.periods import DAY_MS, day_of, shift_of
 from server.accounts.results import CellState, RoundState, SectionState
 from server.accounts.stock import StockBook, stock_at
@@ -29,11 +30,7 @@ def states_of_cells(
         if not cells:
             is_off = True
             continue
-        for part in cells.split(";"):
-            first, _, last = part.partition("-")
-            for number in range(int(first), int(last or first) + 1):
-                if number in states:
-                    states[number] = state
+        states.update((number, state) for number in cells_of(cells) if number in states)
     if is_off:
         states = dict.fromkeys(states, "off")
     return is_off, states

@@ -13,6 +13,7 @@ from tests.source import ROOT, Import, circles, imports, modules
 
 ALL = {
     "accounts",
+    "calculator",
     "cli",
     "clock",
     "demo",
@@ -34,6 +35,7 @@ OURS = {
     "intake": {"storage", "science"},
     "watch": {"storage", "science"},
     "accounts": {"storage", "science", "watch"},
+    "calculator": {"accounts", "science", "storage", "watch"},
     "figures": {"accounts", "watch", "science"},
     "demo": {"storage", "science", "intake", "watch", "accounts"},
     "web": ALL - {"cli"},
@@ -53,6 +55,7 @@ NOT_THEIRS = {
     "intake": WEB_ONLY | {"plotly"},
     "watch": WEB_ONLY | {"plotly"},
     "accounts": WEB_ONLY | {"plotly"},
+    "calculator": WEB_ONLY | {"plotly"},
     "figures": WEB_ONLY | {"sqlalchemy"},
     "demo": WEB_ONLY | {"plotly"},
 }

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from server.science.uncertainty import standard_from_limit
+from server.science.uncertainty.propagation import standard_from_limit
 from server.storage.plant import SectionTerms
 
 ESTIMATED_CURRENT = 0.1

@@ -24,7 +24,7 @@ from server.intake.history import (
 from server.intake.row_slip import LOG_RATIO, MOST_FROM_ONE, SHORTEST, row_slip
 from server.intake.verdicts import Given
 from server.intake.yardstick import Currents, Yardstick, is_working, yardstick
-from server.science.uncertainty import standard_from_limit
+from server.science.uncertainty.propagation import standard_from_limit
 from server.storage.plant import SectionPlan
 from server.storage.walk import walking_order
 

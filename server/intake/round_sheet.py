@@ -10,7 +10,7 @@ from sqlalchemy.orm import Session
 from server.intake.cells import parse_cells
 from server.intake.history import REACH_MS, Readings
 from server.intake.yardstick import IDLE_SHARE, Currents, is_working, yardstick
-from server.science.spread import median, robust_sd
+from server.science.statistics.spread import median, robust_sd
 from server.storage.current import effective_outages, samples_beside, samples_between
 from server.storage.latest import latest
 from server.storage.plant import SectionPlan, SectionTerms

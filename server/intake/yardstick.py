@@ -7,7 +7,7 @@ from sqlalchemy.orm import Session
 
 from server.intake.history import Numbers, Readings, Whole, Yes
 from server.science.processes import process
-from server.science.uncertainty import standard_from_limit
+from server.science.uncertainty.propagation import standard_from_limit
 from server.storage.current import bypasses_of, off_times, samples_between
 from server.storage.plant import SectionPlan, SectionTerms
 

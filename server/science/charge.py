@@ -8,6 +8,7 @@ from server.science.errors import OutOfRange
 Numbers = NDArray[np.float64]
 Codes = NDArray[np.int64]
 
+# House rule: where a stretch of charge comes from.
 MEASURED, ESTIMATED, UNRECORDED = 0, 1, 2
 """What a stretch of current rests on: a sample, the samples beside a gap, or nothing."""
 

@@ -8,7 +8,7 @@ from sqlalchemy.orm import Session
 
 from server.science.charge import UNRECORDED
 from server.science.energy import referred_volts
-from server.science.spread import median, robust_sd
+from server.science.statistics.spread import median, robust_sd
 from server.storage.current import bypasses_of, knots_between
 from server.storage.latest import latest
 from server.storage.plant import House, SectionPlan

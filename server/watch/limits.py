@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 
 from server.science.faraday import deposited_kg
 from server.science.processes import process
-from server.science.spread import median, robust_sd
+from server.science.statistics.spread import median, robust_sd
 from server.storage.flags import Flag
 from server.storage.plant import SectionPlan
 from server.storage.readings import Series

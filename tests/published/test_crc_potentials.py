@@ -7,7 +7,7 @@ from memory. The others were looked up elsewhere, see test_textbook_potentials.p
 
 import pytest
 
-from server.science.potential import OXYGEN_WATER_V, STANDARD_POTENTIALS_V
+from server.science.equilibrium.potential import OXYGEN_WATER_V, STANDARD_POTENTIALS_V
 
 LOOKED_UP = {("Ag", 1): 0.7996, ("Zn", 2): -0.7618, ("Cu", 2): 0.3419}
 FROM_MEMORY = {("Bi", 3): 0.308, ("Te", 4): 0.568}

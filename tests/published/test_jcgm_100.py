@@ -12,7 +12,7 @@ import pytest
 
 from server.science.constants import COPPER
 from server.science.faraday import current_efficiency
-from server.science.uncertainty import (
+from server.science.uncertainty.propagation import (
     combined,
     coverage_factor,
     effective_degrees_of_freedom,

@@ -10,8 +10,8 @@ the scatter of the trials.
 import numpy as np
 import pytest
 
-from server.science.monte_carlo import monte_carlo, normal, rectangular
-from server.science.uncertainty import combined, coverage_factor
+from server.science.uncertainty.monte_carlo import monte_carlo, normal, rectangular
+from server.science.uncertainty.propagation import combined, coverage_factor
 
 ROOT_3 = 3.0**0.5
 UNIT_RECTANGLE = rectangular(-ROOT_3, ROOT_3)

@@ -10,7 +10,7 @@ import math
 import pytest
 
 from server.science.constants import COPPER, NICKEL, SILVER, ZINC
-from server.science.potential import (
+from server.science.equilibrium.potential import (
     metal_potential_v,
     nernst_slope_v,
     oxygen_potential_v,

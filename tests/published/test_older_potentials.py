@@ -7,7 +7,7 @@ checks say how far the generations lie apart, so that nobody mixes them unawares
 
 import pytest
 
-from server.science.potential import FERRIC_FERROUS_V, STANDARD_POTENTIALS_V
+from server.science.equilibrium.potential import FERRIC_FERROUS_V, STANDARD_POTENTIALS_V
 
 HANDBOOK_54 = {
     ("Cu", 2): 0.3419,

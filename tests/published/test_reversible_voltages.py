@@ -8,7 +8,7 @@ al., J. Phys. Chem. Ref. Data 11, Suppl. 2, 1982), from memory.
 
 import pytest
 
-from server.science.potential import reversible_volts
+from server.science.equilibrium.potential import reversible_volts
 from server.science.processes import PROCESSES
 
 

@@ -8,7 +8,7 @@ this program. The seven voltages are ours and worked out by hand.
 import pytest
 from scipy import stats
 
-from server.science.spread import NORMAL_CONSISTENCY, hampel_scores, median, robust_sd
+from server.science.statistics.spread import NORMAL_CONSISTENCY, hampel_scores, median, robust_sd
 
 
 def test_the_factor_as_printed():

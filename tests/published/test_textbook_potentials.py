@@ -7,7 +7,7 @@ another reaction, TeO2 to Te, which is left out.
 
 import pytest
 
-from server.science.potential import (
+from server.science.equilibrium.potential import (
     FERRIC_FERROUS_V,
     OXYGEN_WATER_V,
     STANDARD_POTENTIALS_V,

@@ -8,7 +8,7 @@ figures it is 62.979, with the exact ones 62.976.
 import pytest
 
 from server.science.constants import FARADAY_C_MOL, GAS_CONSTANT_J_MOL_K
-from server.science.potential import nernst_slope_v, reversible_volts
+from server.science.equilibrium.potential import nernst_slope_v, reversible_volts
 from server.science.processes import PROCESSES
 
 COPPER_ELECTROWINNING = PROCESSES["copper electrowinning"]

@@ -7,7 +7,7 @@ kWh/t" for copper is looked up (IEEE Trans. Ind. Appl. 46 (2010) 1264; JOM 2024)
 
 import pytest
 
-from server.science.averages import hold_means
+from server.science.statistics.averages import hold_means
 from server.science.constants import COBALT, COPPER, NICKEL
 from server.science.faraday import (
     current_density_a_m2,

@@ -5,7 +5,7 @@ import pytest
 
 from server.science.constants import ANTIMONY, COPPER, ZINC
 from server.science.errors import OutOfRange, UnknownName
-from server.science.potential import (
+from server.science.equilibrium.potential import (
     STANDARD_POTENTIALS_V,
     metal_potential_v,
     nernst_slope_v,

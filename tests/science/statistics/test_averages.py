@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from server.science.averages import hold_means, linear_means
+from server.science.statistics.averages import hold_means, linear_means
 from server.science.errors import OutOfRange, WrongShape
 
 HOUR = 3_600_000

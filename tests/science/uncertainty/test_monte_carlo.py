@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from server.science.errors import OutOfRange, WrongShape
-from server.science.monte_carlo import monte_carlo, normal, rectangular
+from server.science.uncertainty.monte_carlo import monte_carlo, normal, rectangular
 
 
 def product(a, b):

@@ -8,8 +8,8 @@ import pytest
 from server.science.constants import COPPER
 from server.science.errors import OutOfRange, WrongShape
 from server.science.faraday import current_efficiency
-from server.science.monte_carlo import monte_carlo, normal
-from server.science.uncertainty import (
+from server.science.uncertainty.monte_carlo import monte_carlo, normal
+from server.science.uncertainty.propagation import (
     combined,
     coverage_factor,
     effective_degrees_of_freedom,

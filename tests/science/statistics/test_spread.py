@@ -7,7 +7,7 @@ from hypothesis import strategies as st
 from hypothesis.extra.numpy import array_shapes, arrays
 
 from server.science.errors import OutOfRange
-from server.science.spread import (
+from server.science.statistics.spread import (
     hampel_scores,
     is_outlying,
     median,

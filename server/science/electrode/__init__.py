@@ -1,0 +1,1 @@
+"""How fast a reaction goes at an electrode, and how fast the solution can feed it."""

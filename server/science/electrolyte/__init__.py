@@ -1,0 +1,1 @@
+"""The solution between the plates: density, viscosity, conductivity, diffusion, gas in it."""

@@ -1,0 +1,1 @@
+"""Current that makes no metal: shorts, ferric reduction, hydrogen, leakage."""

@@ -1,0 +1,1 @@
+"""The books of electrorefining alone: anodes, slimes, copper in solution, the bleed."""

@@ -1,0 +1,1 @@
+"""What many readings say together: robust centres, charts, trends, many tests at once."""

@@ -1,0 +1,1 @@
+"""How sure a figure is: propagation, trial, and measurements made to agree with a balance."""

@@ -1,0 +1,1 @@
+"""What a cell voltage is made of, and how it answers to current, heat, bath and gap."""

@@ -28,6 +28,7 @@ from server.storage.people import (
 )
 from server.web.security import Passwords, fault_of_password, new_token, token_hash
 
+# The names come from the table of roles, which a type checker does not work out.
 Role = StrEnum("Role", {role: role for role in ROLES})  # type: ignore[misc]
 
 user = typer.Typer(no_args_is_help=True, help="People who sign in.")

@@ -47,9 +47,11 @@ class Hanging:
 
     def drop(self, lot: str) -> None:
         """Forget a lot."""
-        numbers, growth = self._of_lot.pop(lot, ((), None))
+        if lot not in self._of_lot:
+            return
+        numbers, growth = self._of_lot.pop(lot)
         for number in numbers:
-            self._cells[number].remove(growth)  # type: ignore[arg-type]
+            self._cells[number].remove(growth)
 
     def overlap(self, cells: Iterable[int], growth: Growth, most: int) -> Overlap | None:
         """The first cell in which more than `most` cathodes would grow at one time."""

@@ -6,7 +6,7 @@ from pathlib import Path
 from alembic.config import Config
 from alembic.runtime.migration import MigrationContext
 from alembic.script import ScriptDirectory
-from sqlalchemy import func, select, text
+from sqlalchemy import Select, func, select, text
 from sqlalchemy.exc import SQLAlchemyError
 from sqlalchemy.orm import Session
 
@@ -80,8 +80,8 @@ def condition(session: Session) -> Condition:
         select(Delivery.sheet, func.sum(Delivery.stored)).group_by(Delivery.sheet)
     )
 
-    def counted(what: object) -> int:
-        return int(session.scalar(what) or 0)  # type: ignore[call-overload]
+    def counted(what: Select[tuple[int]]) -> int:
+        return session.scalar(what) or 0
 
     return Condition(
         rows_stored={sheet: int(rows or 0) for sheet, rows in stored},

@@ -52,6 +52,7 @@ def create_app(settings: Settings | None = None, database: Database | None = Non
         form_limits={"max_fields": MOST_FIELDS, "max_files": MOST_FILES},
     )
     app.state.site = here
+    # FastAPI documents this way of replacing its document; a type checker sees a method.
     app.openapi = lambda: document(app)  # type: ignore[method-assign]
     for router in (*_routers(api), *_routers(pages)):
         app.include_router(router)

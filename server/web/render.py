@@ -91,6 +91,7 @@ def environment() -> Environment:
         auto_reload=False,
         extensions=["jinja2.ext.i18n"],
     )
+    # Jinja2 adds this method when the extension is loaded; its stubs do not know.
     env.install_gettext_callables(  # type: ignore[attr-defined]
         i18n.gettext,
         i18n.ngettext,

@@ -80,7 +80,7 @@ def condition(session: Session) -> Condition:
         select(Delivery.sheet, func.sum(Delivery.stored)).group_by(Delivery.sheet)
     )
 
-    def counted(what: Select[tuple[int]]) -> int:
+    def counted(what: Select[int]) -> int:
         return session.scalar(what) or 0
 
     return Condition(

@@ -101,14 +101,46 @@ def combined(
         raise WrongShape("sensitivities", found="a single number", allowed="inputs in a sequence")
     if correlation is None:
         return np.asarray(np.sqrt((parts**2).sum(axis=0)))
-    matrix = _correlation_matrix(correlation, inputs=parts.shape[0])
+    matrix = correlation_matrix(correlation, inputs=parts.shape[0])
     variance = np.einsum("i...,ij,j...->...", parts, matrix, parts)
     # A variance a rounding error below zero is zero: the inputs cancel.
     return np.asarray(np.sqrt(np.where(variance < 0.0, 0.0, variance)))
 
 
-def _correlation_matrix(correlation: ArrayLike, inputs: int) -> Numbers:
-    """The matrix, once it is certain that it is one."""
+def correlation_matrix(correlation: ArrayLike, inputs: int) -> Numbers:
+    """Correlation coefficients as a matrix, once it is certain that they are some.
+
+    Ones on the diagonal, the same on both sides of it, and no set of errors that would have a
+    negative variance: two inputs cannot both follow a third and oppose each other.
+
+    Parameters
+    ----------
+    correlation : array_like, shape (N, N)
+        Correlation coefficients, without unit.
+    inputs : int
+        The number N of inputs.
+
+    Returns
+    -------
+    ndarray, shape (N, N)
+        The same numbers.
+
+    Raises
+    ------
+    OutOfRange
+        If a number is missing or infinite, or the matrix is no correlation matrix.
+    WrongShape
+        If it is not N by N.
+
+    Source
+    ------
+    JCGM 100:2008, 5.2.2 and C.3.6.
+
+    Example
+    -------
+    >>> correlation_matrix([[1, 0.5], [0.5, 1]], inputs=2).tolist()
+    [[1.0, 0.5], [0.5, 1.0]]
+    """
     matrix = finite("correlation", correlation)
     if matrix.shape != (inputs, inputs):
         raise WrongShape("correlation", found=matrix.shape, allowed=f"({inputs}, {inputs})")

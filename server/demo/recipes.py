@@ -64,6 +64,7 @@ COPPER_WON = SectionRecipe(
     ),
     optional_facts=(
         ("differential_resistance_uohm", 11.3),
+        ("electrode_gap_mm", 38.0),
         ("rectifier_efficiency_pct", 96.5),
         ("meter_accuracy_mv", 2.0),
         ("current_accuracy_pct", 0.5),

@@ -16,14 +16,16 @@ from server.intake.plant_file import (
 )
 from server.intake.plant_model import PlantSection, PlantShift, PlantTankhouse
 from server.science.units import (
+    degc_from_kelvin,
     ka_from_amps,
     kwh_t_from_j_kg,
     microohm_from_ohm,
+    millimetres_from_metres,
     millivolts_from_volts,
     percent_from_share,
 )
 from server.storage.errors import Conflict
-from server.storage.plant import House, SectionPlan, house, tankhouse
+from server.storage.plant import House, SectionPlan, SectionTerms, house, tankhouse
 from server.storage.plant_terms import (
     add_section_terms,
     drop_house_terms,
@@ -113,7 +115,7 @@ def change_house(
     why: str,
     now_ms: int,
 ) -> None:
-    """Let the price of energy or the shifts be others from a moment on.
+    """Let the price of energy, the table of potentials or the shifts be others from a moment on.
 
     `changes` has the keys of `[tankhouse]` and may have `shifts`, a list of tables of name and
     starts. The name and the currency change for all time; the time zone never does, since
@@ -132,16 +134,19 @@ def change_house(
     change = _change(from_ms, now_ms, who, why)
     row = tankhouse(session)
     row.name, row.currency = model.name, model.currency
-    is_same_price = model.energy_price_per_kwh == fields["energy_price_per_kwh"]
+    is_same_house = all(
+        getattr(model, key) == fields[key]
+        for key in ("energy_price_per_kwh", "standard_potentials")
+    )
     starts = tuple(sorted((shift.starts_minute, shift.name) for shift in shifts))
     is_same_shifts = starts == plan.shifts_at(from_ms)
     session.flush()
-    if is_same_price and is_same_shifts:
+    if is_same_house and is_same_shifts:
         return
     if any(terms.from_ms == from_ms for terms in plan.terms):
         _refuse_the_past(from_ms, now_ms)
         drop_house_terms(session, from_ms)
-    add_house_terms(session, model.energy_price_per_kwh, shifts, change)
+    add_house_terms(session, model, shifts, change)
     if not is_same_shifts:
         later = [terms.from_ms for terms in plan.terms if terms.from_ms > from_ms]
         for section in plan.sections:
@@ -175,9 +180,30 @@ def section_fields(plan: SectionPlan, at_ms: int) -> dict[str, Any]:
         "scale_accuracy_pct": _plain(percent_from_share(terms.scale_accuracy)),
         "walk_order": terms.walk_order,
         "bus_volts": terms.bus_volts,
+        **_electrolyte_fields(terms),
         "current_efficiency_pct": _plain(percent_from_share(terms.target_current_efficiency)),
         "specific_energy_kwh_t": _plain(kwh_t_from_j_kg(terms.target_specific_energy_j_kg)),
         "cell_volts": [terms.low_volts, terms.high_volts],
+    }
+
+
+def _electrolyte_fields(terms: SectionTerms) -> dict[str, float | None]:
+    """What a section says of the way through its electrolyte, as in a plant file."""
+    gap_m, at_k, accuracy = (
+        terms.electrode_gap_m,
+        terms.conductivity_at_k,
+        terms.conductivity_accuracy,
+    )
+    return {
+        "electrode_gap_mm": None if gap_m is None else _plain(millimetres_from_metres(gap_m)),
+        "conductivity_s_m": terms.conductivity_s_m,
+        "conductivity_at_c": None if at_k is None else _plain(degc_from_kelvin(at_k)),
+        "conductivity_per_c": terms.conductivity_per_k,
+        "conductivity_per_metal_g_l": terms.conductivity_per_metal_g_l,
+        "conductivity_per_acid_g_l": terms.conductivity_per_acid_g_l,
+        "conductivity_accuracy_pct": (
+            None if accuracy is None else _plain(percent_from_share(accuracy))
+        ),
     }
 
 
@@ -188,6 +214,7 @@ def house_fields(plan: House, at_ms: int) -> dict[str, Any]:
         "time_zone": plan.time_zone,
         "currency": plan.currency,
         "energy_price_per_kwh": plan.terms_at(at_ms).energy_price_per_kwh,
+        "standard_potentials": plan.terms_at(at_ms).standard_potentials,
         "shifts": [
             {"name": name, "starts": f"{minute // 60:02d}:{minute % 60:02d}"}
             for minute, name in plan.shifts_at(at_ms)
@@ -200,7 +227,11 @@ def plant_toml(session: Session, at_ms: int) -> str:
     plan = house(session)
     fields = house_fields(plan, at_ms)
     shifts = fields.pop("shifts")
-    tables = [_table("[tankhouse]", fields), *(_table("[[shift]]", shift) for shift in shifts)]
+    given_of_house = {key: value for key, value in fields.items() if value is not None}
+    tables = [
+        _table("[tankhouse]", given_of_house),
+        *(_table("[[shift]]", shift) for shift in shifts),
+    ]
     for section in plan.sections:
         of_section = section_fields(section, at_ms)
         targets = {key: of_section.pop(key) for key in _TARGETS}

@@ -9,10 +9,12 @@ from typing import Any
 from sqlalchemy.orm import Session
 
 from server.intake.plant_faults import PlantFault, PlantFileWrong, checked
-from server.intake.plant_model import PlantFile, PlantSection, PlantShift
+from server.intake.plant_model import PlantFile, PlantSection, PlantShift, PlantTankhouse
 from server.science.units import (
     amps_from_ka,
     j_kg_from_kwh_t,
+    kelvin_from_degc,
+    metres_from_millimetres,
     ohm_from_microohm,
     share_from_percent,
     volts_from_millivolts,
@@ -97,7 +99,7 @@ def found_plant(session: Session, plant: PlantFile, now_ms: int, who: str) -> No
             made_ms=now_ms,
         )
     )
-    add_house_terms(session, house.energy_price_per_kwh, plant.shift, change)
+    add_house_terms(session, house, plant.shift, change)
     for section in plant.section:
         found_section(session, section, change)
 
@@ -127,13 +129,14 @@ def add_cells(session: Session, section_id: int, former: int, cells: int) -> Non
 
 
 def add_house_terms(
-    session: Session, price_per_kwh: float, shifts: list[PlantShift], change: Change
+    session: Session, house: PlantTankhouse, shifts: list[PlantShift], change: Change
 ) -> None:
     """Write what holds for the whole house from a moment on."""
     session.add(
         HouseTerms(
             from_ms=change.from_ms,
-            energy_price_per_kwh=price_per_kwh,
+            energy_price_per_kwh=house.energy_price_per_kwh,
+            standard_potentials=house.standard_potentials,
             changed_ms=change.changed_ms,
             changed_by=change.changed_by,
             why=change.why,
@@ -171,6 +174,7 @@ def terms_of(section: PlantSection, change: Change) -> dict[str, Any]:
         "scale_accuracy": share_from_percent(section.scale_accuracy_pct),
         "walk_order": section.walk_order,
         "bus_volts": section.bus_volts,
+        **_electrolyte_of(section),
         "target_current_efficiency": share_from_percent(section.targets.current_efficiency_pct),
         "target_specific_energy_j_kg": j_kg_from_kwh_t(section.targets.specific_energy_kwh_t),
         "low_volts": low_volts,
@@ -178,4 +182,19 @@ def terms_of(section: PlantSection, change: Change) -> dict[str, Any]:
         "changed_ms": change.changed_ms,
         "changed_by": change.changed_by,
         "why": change.why,
+    }
+
+
+def _electrolyte_of(section: PlantSection) -> dict[str, float | None]:
+    """What the section says of the way through its electrolyte; None where it does not."""
+    gap_mm, at_c = section.electrode_gap_mm, section.conductivity_at_c
+    accuracy_pct = section.conductivity_accuracy_pct
+    return {
+        "electrode_gap_m": None if gap_mm is None else metres_from_millimetres(gap_mm),
+        "conductivity_s_m": section.conductivity_s_m,
+        "conductivity_at_k": None if at_c is None else kelvin_from_degc(at_c),
+        "conductivity_per_k": section.conductivity_per_c,
+        "conductivity_per_metal_g_l": section.conductivity_per_metal_g_l,
+        "conductivity_per_acid_g_l": section.conductivity_per_acid_g_l,
+        "conductivity_accuracy": None if accuracy_pct is None else share_from_percent(accuracy_pct),
     }

@@ -18,6 +18,7 @@ from pydantic import (
 )
 
 from server.intake.plant_faults import WrongTogether
+from server.science.equilibrium.tables import DEFAULT_TABLE, TABLES, potential_table
 from server.science.errors import ScienceError, UnknownName
 from server.science.processes import Process, process
 from server.storage.walk import read_walk_order
@@ -49,6 +50,15 @@ def _currency(code: str) -> str:
 @lru_cache
 def _currencies() -> frozenset[str]:
     return frozenset(Locale("en").currencies)
+
+
+def _potentials(key: str | None) -> str | None:
+    if not key:
+        return None
+    try:
+        return potential_table(key).key
+    except UnknownName:
+        raise ValueError(f"one of {', '.join(TABLES)}") from None
 
 
 def _starts(text: str) -> str:
@@ -104,6 +114,11 @@ class PlantTankhouse(_Strict):
     energy_price_per_kwh: Annotated[
         float, Field(ge=0, le=1e6, description="a price of zero or more")
     ]
+    standard_potentials: Annotated[
+        str | None,
+        AfterValidator(_potentials),
+        Field(description="a table of standard potentials such as " + DEFAULT_TABLE.key),
+    ] = None
 
 
 class PlantTargets(_Strict):
@@ -167,6 +182,28 @@ class PlantSection(_Strict):
     bus_volts: Annotated[
         float | None, Field(gt=0, le=10_000, description="volts of the whole section, above 0")
     ] = None
+    electrode_gap_mm: Annotated[
+        float | None,
+        Field(gt=0, le=1000, description="millimetres from anode face to cathode face, above 0"),
+    ] = None
+    conductivity_s_m: Annotated[
+        float | None, Field(ge=-1000, le=1000, description="siemens per metre")
+    ] = None
+    conductivity_at_c: Annotated[
+        float | None, Field(ge=-20, le=150, description="degrees Celsius, -20 to 150")
+    ] = None
+    conductivity_per_c: Annotated[
+        float | None, Field(ge=-10, le=10, description="S/m by the degree, -10 to 10")
+    ] = None
+    conductivity_per_metal_g_l: Annotated[
+        float | None, Field(ge=-10, le=10, description="S/m by the g/L of metal, -10 to 10")
+    ] = None
+    conductivity_per_acid_g_l: Annotated[
+        float | None, Field(ge=-10, le=10, description="S/m by the g/L of acid, -10 to 10")
+    ] = None
+    conductivity_accuracy_pct: Annotated[
+        float | None, Field(gt=0, le=100, description="a percentage above 0, up to 100")
+    ] = None
     targets: Annotated[
         PlantTargets, Field(description="a table [section.targets] below its section")
     ]
@@ -188,7 +225,30 @@ class PlantSection(_Strict):
         except ValueError as error:
             expected = f"each cell once, in walking order ({error})"
             raise WrongTogether("walk_order", self.walk_order, expected) from None
+        self._conductivity_makes_sense()
         return self
+
+    def _conductivity_makes_sense(self) -> None:
+        """Refuse parts of a straight line without the others that it needs."""
+        slopes = {
+            key: getattr(self, key)
+            for key in ("conductivity_per_metal_g_l", "conductivity_per_acid_g_l")
+        }
+        of_it = {
+            "conductivity_at_c": self.conductivity_at_c,
+            "conductivity_per_c": self.conductivity_per_c,
+            "conductivity_accuracy_pct": self.conductivity_accuracy_pct,
+            **slopes,
+        }
+        if self.conductivity_s_m is None:
+            for key, value in of_it.items():
+                if value is not None:
+                    raise WrongTogether(key, value, "conductivity_s_m beside it")
+            return
+        if self.conductivity_at_c is None:
+            raise WrongTogether("conductivity_at_c", None, "the temperature of conductivity_s_m")
+        if self.conductivity_s_m <= 0 and not any(slopes.values()):
+            raise WrongTogether("conductivity_s_m", self.conductivity_s_m, "S/m above 0")
 
     def chemistry(self) -> Process:
         """The process with its metal and electrons."""

@@ -31,13 +31,18 @@ class Tankhouse(Base):
 
 
 class HouseTerms(Base):
-    """What holds for the whole house from a moment on: the price of energy and the shifts."""
+    """What holds for the whole house from a moment on: the price of energy and the shifts.
+
+    `standard_potentials` is the key of the table of standard potentials that the house works
+    with; None where it works with the program's own choice.
+    """
 
     __tablename__ = "house_terms"
     __table_args__ = (STRICT,)
 
     from_ms: Mapped[int] = mapped_column(Whole, primary_key=True, autoincrement=False)
     energy_price_per_kwh: Mapped[float] = mapped_column(Real)
+    standard_potentials: Mapped[str | None] = mapped_column(Words)
     changed_ms: Mapped[int] = mapped_column(Whole)
     changed_by: Mapped[str] = mapped_column(Words)
     why: Mapped[str] = mapped_column(Words)
@@ -70,7 +75,12 @@ class Section(Base):
 
 
 class SectionTerms(Base):
-    """What holds for a section from a moment on; SI units, shares from 0 to 1."""
+    """What holds for a section from a moment on; SI units, shares from 0 to 1.
+
+    The plant's own conductivity of the electrolyte is a straight line: `conductivity_s_m` at
+    `conductivity_at_k` and no metal or acid, with its changes by the kelvin and by the g/L of
+    metal and acid. A value that was measured in the plant's usual solution has no such changes.
+    """
 
     __tablename__ = "section_terms"
     __table_args__ = (CLUSTERED,)
@@ -90,6 +100,13 @@ class SectionTerms(Base):
     scale_accuracy: Mapped[float] = mapped_column(Real)
     walk_order: Mapped[str] = mapped_column(Words)
     bus_volts: Mapped[float | None] = mapped_column(Real)
+    electrode_gap_m: Mapped[float | None] = mapped_column(Real)
+    conductivity_s_m: Mapped[float | None] = mapped_column(Real)
+    conductivity_at_k: Mapped[float | None] = mapped_column(Real)
+    conductivity_per_k: Mapped[float | None] = mapped_column(Real)
+    conductivity_per_metal_g_l: Mapped[float | None] = mapped_column(Real)
+    conductivity_per_acid_g_l: Mapped[float | None] = mapped_column(Real)
+    conductivity_accuracy: Mapped[float | None] = mapped_column(Real)
     target_current_efficiency: Mapped[float] = mapped_column(Real)
     target_specific_energy_j_kg: Mapped[float] = mapped_column(Real)
     low_volts: Mapped[float] = mapped_column(Real)

@@ -76,6 +76,49 @@ def section_groups(currency: str = "") -> tuple[Group, ...]:
             ),
         ),
         Group(
+            _("Electrolyte"),
+            (
+                PlantField(
+                    "electrode_gap_mm",
+                    _("Gap from anode to cathode, face to face"),
+                    "mm",
+                    is_required=False,
+                ),
+                PlantField(
+                    "conductivity_s_m",
+                    _("Conductivity, measured"),
+                    "S/m",
+                    is_required=False,
+                    hint=_("blank: from the literature's correlation for the process"),
+                ),
+                PlantField("conductivity_at_c", _("at"), "°C", is_required=False),
+                PlantField(
+                    "conductivity_per_c", _("and for each degree more"), "S/m", is_required=False
+                ),
+                PlantField(
+                    "conductivity_per_metal_g_l",
+                    _("for each g/L of metal"),
+                    "S/m",
+                    is_required=False,
+                    hint=_(
+                        "only for a correlation; the conductivity is then that of no metal and acid"
+                    ),
+                ),
+                PlantField(
+                    "conductivity_per_acid_g_l",
+                    _("for each g/L of acid"),
+                    "S/m",
+                    is_required=False,
+                ),
+                PlantField(
+                    "conductivity_accuracy_pct",
+                    _("Conductivity, ±"),
+                    "%",
+                    is_required=False,
+                ),
+            ),
+        ),
+        Group(
             _("Targets"),
             (
                 PlantField("current_efficiency_pct", _("Current efficiency"), "%"),

@@ -17,6 +17,19 @@ REVISIONS = [
     for revision in reversed(list(ScriptDirectory(str(MIGRATIONS)).walk_revisions()))
 ]
 
+OLD_PLANT = (
+    "INSERT INTO house_terms (from_ms, energy_price_per_kwh, changed_ms, changed_by, why)"
+    " VALUES (0, 0.09, 1, 'ana', 'as in the plant file')",
+    "INSERT INTO section (id, name, process, metal, electrons)"
+    " VALUES (1, 'EW1', 'copper electrowinning', 'Cu', 2)",
+    "INSERT INTO section_terms (section_id, from_ms, cells, rows, cathodes_per_cell,"
+    " cathode_area_m2, rated_amps, metal_value_per_kg, meter_accuracy_v, current_accuracy,"
+    " scale_accuracy, walk_order, target_current_efficiency, target_specific_energy_j_kg,"
+    " low_volts, high_volts, changed_ms, changed_by, why) VALUES (1, 0, 48, 2, 60, 2.0, 36000.0,"
+    " 9.2, 0.002, 0.005, 0.002, '', 0.92, 7020000.0, 1.8, 2.2, 1, 'ana', '')",
+)
+"""Rows of a plant as the first release wrote them."""
+
 
 @pytest.fixture
 def empty(empty_database_url):
@@ -119,3 +132,22 @@ def test_climbing_twice_changes_nothing(empty):
     empty.upgrade()
 
     assert shape(empty) == before
+
+
+def test_an_old_plant_keeps_its_rows_through_every_later_step(empty):
+    empty.upgrade("0001")
+    with empty.engine.begin() as connection:
+        for statement in OLD_PLANT:
+            connection.exec_driver_sql(statement)
+
+    empty.upgrade()
+
+    with empty.engine.connect() as connection:
+        terms = connection.exec_driver_sql(
+            "SELECT cells, rated_amps, low_volts, electrode_gap_m FROM section_terms"
+        ).all()
+        prices = connection.exec_driver_sql(
+            "SELECT energy_price_per_kwh, standard_potentials FROM house_terms"
+        ).all()
+    assert [tuple(row) for row in terms] == [(48, 36_000.0, 1.8, None)]
+    assert [tuple(row) for row in prices] == [(0.09, None)]

@@ -40,6 +40,13 @@ class SectionAnswer(Answer):
                 "scale_accuracy_pct": 0.2,
                 "walk_order": "snake",
                 "bus_volts": None,
+                "electrode_gap_mm": 42.0,
+                "conductivity_s_m": 58.0,
+                "conductivity_at_c": 45.0,
+                "conductivity_per_c": 0.4,
+                "conductivity_per_metal_g_l": None,
+                "conductivity_per_acid_g_l": None,
+                "conductivity_accuracy_pct": 5.0,
                 "targets": {
                     "current_efficiency_pct": 92.0,
                     "specific_energy_kwh_t": 1900.0,
@@ -67,6 +74,13 @@ class SectionAnswer(Answer):
     scale_accuracy_pct: float
     walk_order: str
     bus_volts: float | None
+    electrode_gap_mm: float | None
+    conductivity_s_m: float | None
+    conductivity_at_c: float | None
+    conductivity_per_c: float | None
+    conductivity_per_metal_g_l: float | None
+    conductivity_per_acid_g_l: float | None
+    conductivity_accuracy_pct: float | None
     targets: SectionTargets
     since: Moment | None
     """From when these terms hold; null: from the start."""
@@ -79,6 +93,8 @@ class Plant(Answer):
     time_zone: str
     currency: str
     energy_price_per_kwh: float
+    standard_potentials: str | None
+    """Key of the table of standard potentials that the house chose; null: the program's own."""
     sections: list[SectionAnswer]
 
 

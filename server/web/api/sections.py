@@ -1,9 +1,11 @@
 """The tankhouse and its sections as they are set up."""
 
 from server.science.units import (
+    degc_from_kelvin,
     ka_from_amps,
     kwh_t_from_j_kg,
     microohm_from_ohm,
+    millimetres_from_metres,
     millivolts_from_volts,
     percent_from_share,
 )
@@ -31,6 +33,7 @@ def plant_answer(house: House, at_ms: int) -> Plant:
         time_zone=house.time_zone,
         currency=house.currency,
         energy_price_per_kwh=house.terms_at(at_ms).energy_price_per_kwh,
+        standard_potentials=house.terms_at(at_ms).standard_potentials,
         sections=[_section(section, at_ms) for section in house.sections],
     )
 
@@ -55,6 +58,13 @@ def _section(section: SectionPlan, at_ms: int) -> SectionAnswer:
         scale_accuracy_pct=float(percent_from_share(terms.scale_accuracy)),
         walk_order=terms.walk_order,
         bus_volts=terms.bus_volts,
+        electrode_gap_mm=known(terms.electrode_gap_m, millimetres_from_metres),
+        conductivity_s_m=terms.conductivity_s_m,
+        conductivity_at_c=known(terms.conductivity_at_k, degc_from_kelvin),
+        conductivity_per_c=terms.conductivity_per_k,
+        conductivity_per_metal_g_l=terms.conductivity_per_metal_g_l,
+        conductivity_per_acid_g_l=terms.conductivity_per_acid_g_l,
+        conductivity_accuracy_pct=known(terms.conductivity_accuracy, percent_from_share),
         targets=SectionTargets(
             current_efficiency_pct=float(percent_from_share(terms.target_current_efficiency)),
             specific_energy_kwh_t=float(kwh_t_from_j_kg(terms.target_specific_energy_j_kg)),

@@ -10,6 +10,7 @@ from starlette.responses import RedirectResponse, Response
 from server.intake.plant_change import change_house, house_fields
 from server.intake.plant_faults import PlantFileWrong
 from server.intake.plant_history import house_history
+from server.science.equilibrium.tables import DEFAULT_TABLE, potential_table, table_titles
 from server.storage.errors import Conflict
 from server.storage.plant import House
 from server.web.dependencies import Now, Reader, Superintendent, ThisHouse, Who, WriteSession
@@ -23,7 +24,7 @@ from server.web.typed import one_line
 from server.web.uploads import FormFields
 
 MOST_SHIFTS = 6
-KEYS = ("name", "currency", "energy_price_per_kwh", "shifts", "starts")
+KEYS = ("name", "currency", "energy_price_per_kwh", "standard_potentials", "shifts", "starts")
 
 router = APIRouter(include_in_schema=False)
 
@@ -93,6 +94,7 @@ def _wanted(typed: Mapping[str, str]) -> dict[str, Any]:
         "name": typed.get("name", "").strip(),
         "currency": typed.get("currency", "").strip().upper(),
         price.key: value_of(price, typed.get(price.key, "")),
+        "standard_potentials": typed.get("standard_potentials", "").strip() or None,
         "shifts": sorted(shifts, key=lambda shift: shift["starts"]),
     }
 
@@ -118,6 +120,9 @@ def _page(
             )
             for place in range(rows)
         ],
+        "tables": list(table_titles().items()),
+        "own_table": DEFAULT_TABLE.title,
+        "chosen_table": potential_table(fields["standard_potentials"] or DEFAULT_TABLE.key).title,
         "typed": typed,
         "from_ms": from_suggested(now_ms, house.time_zone, house.terms),
         "faults": faults,

@@ -85,3 +85,17 @@ def test_a_reader_sees_and_changes_nothing(client_of):
 
     assert "night 00:00 · day 08:00" in words_of(client.get("/setup/house"))
     assert client.post("/setup/house", data=SHOWN).status_code == 403
+
+
+def test_another_table_of_potentials_is_chosen_from_a_date_on(client, session):
+    answer = client.post("/setup/house", data=SHOWN | {"standard_potentials": "bard 1985"})
+
+    plan = now(session)
+    assert answer.status_code == 303
+    assert plan.terms_at(NOW_MS).standard_potentials == "bard 1985"
+    assert plan.terms_at(NOW_MS - 86_400_000).standard_potentials is None
+    assert "Table of standard potentials: none → bard 1985" in words_of(client.get("/setup/house"))
+
+
+def test_a_reader_sees_which_table_of_potentials_holds(client_of):
+    assert "CRC Handbook, recent editions" in words_of(client_of("reader").get("/setup/house"))

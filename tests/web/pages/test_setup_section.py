@@ -122,3 +122,20 @@ def test_a_second_change_of_the_day_is_offered_from_now_on(client, section):
 
 def test_a_section_that_is_not_there_is_not_found(client, section):
     assert client.get("/setup/sections/EW9").status_code == 404
+
+
+def test_a_measured_conductivity_is_written_down_with_its_temperature(client, section, session):
+    answer = sent(client, electrode_gap_mm="42", conductivity_s_m="57,5", conductivity_at_c="45")
+
+    former, now = terms(session)
+    assert answer.status_code == 303
+    assert (former.electrode_gap_m, former.conductivity_s_m) == (None, None)
+    assert now.electrode_gap_m == pytest.approx(0.042)
+    assert (now.conductivity_s_m, now.conductivity_at_k) == (57.5, 318.15)
+
+
+def test_a_conductivity_without_its_temperature_is_asked_for_it(client, section):
+    answer = sent(client, conductivity_s_m="57.5")
+
+    assert answer.status_code == 422
+    assert "Expected the temperature of conductivity_s_m." in words_of(answer)

@@ -54,15 +54,16 @@ def propagated(
     standard_uncertainties: Inputs,
     correlation: Correlation = None,
     degrees_of_freedom: Inputs | None = None,
+    step: float = 1.0,
 ) -> Propagated:
     """Result of a model with its standard uncertainty and the budget of its inputs.
 
     Each input is moved up and down by its own standard uncertainty, and half the difference of
     the two results is its contribution: the numerical form of the law of propagation that the
-    guide itself gives. It asks nothing of the model but to take numbers, needs no step to be
-    chosen, and sees the model as far as the input may well be; a derivative in the narrow sense
-    (`scipy.differentiate`) needs a model of arrays and sees only the point. Where the model
-    refuses one side, because the input cannot be that low or high, the other side alone counts.
+    guide itself gives. It asks nothing of the model but to take numbers, and sees the model as
+    far as the input may well be; a derivative in the narrow sense (`scipy.differentiate`) needs
+    a model of arrays and sees only the point, which a small `step` comes to as well. Where the
+    model refuses one side, because the input cannot be that low or high, the other alone counts.
 
     Parameters
     ----------
@@ -77,6 +78,8 @@ def propagated(
         Correlation coefficients; independent inputs where not given.
     degrees_of_freedom : mapping of str to float, or sequence of float, optional
         Degrees of freedom of the uncertainties; above zero. Infinite where not given.
+    step : float
+        How far an input is moved, as a share of its uncertainty; above 0.
 
     Returns
     -------
@@ -88,8 +91,8 @@ def propagated(
     Raises
     ------
     OutOfRange
-        If a number is infinite, an uncertainty negative or the correlation impossible; and what
-        the model refuses at the estimates, or on both sides of one.
+        If a number is infinite, an uncertainty negative, the correlation impossible or the step
+        not above zero; and what the model refuses at the estimates, or on both sides of one.
     UnknownName
         If an uncertainty, correlation or degrees of freedom are given for no input.
     WrongShape
@@ -113,11 +116,16 @@ def propagated(
     >>> {name: round(share, 3) for name, share in heat.contributions.items()}
     {'amps': 0.01, 'ohm': 0.99}
     """
+    if not step > 0.0:
+        raise OutOfRange("step", found=step, allowed="above zero")
     names, centres, by_name = _named(estimates)
     errors = not_negative("standard_uncertainties", _matched(standard_uncertainties, names, 0.0))
     matrix = _matrix(correlation, names)
-    degrees = _matched(degrees_of_freedom or {}, names, math.inf)
-    value, parts, bends = _tried(_one_number(model), centres, errors, names if by_name else None)
+    degrees = _matched({} if degrees_of_freedom is None else degrees_of_freedom, names, math.inf)
+    value, parts, bends = _tried(
+        _one_number(model), centres, errors * step, names if by_name else None
+    )
+    parts, bends = parts / step, bends / step**2
     total = float(combined(parts, np.ones(len(names)), matrix))
     weights = parts if matrix is None else np.einsum("ij,j->i", matrix, parts)
     known = errors > 0.0
@@ -137,6 +145,7 @@ def propagated_together(
     estimates: Inputs,
     standard_uncertainties: Inputs,
     correlation: Correlation = None,
+    step: float = 1.0,
 ) -> Joint:
     """Several results of one set of inputs, with their uncertainties and their correlation.
 
@@ -154,6 +163,8 @@ def propagated_together(
         Their standard uncertainties, same units; not negative, none where not in the mapping.
     correlation : mapping of pairs of names to float, or array_like of shape (N, N), optional
         Correlation coefficients of the inputs; independent inputs where not given.
+    step : float
+        How far an input is moved, as a share of its uncertainty; above 0.
 
     Returns
     -------
@@ -163,8 +174,8 @@ def propagated_together(
     Raises
     ------
     OutOfRange
-        If a number is infinite, an uncertainty negative or the correlation impossible; and what
-        the model refuses at the estimates, or on both sides of one.
+        If a number is infinite, an uncertainty negative, the correlation impossible or the step
+        not above zero; and what the model refuses at the estimates, or on both sides of one.
     UnknownName
         If an uncertainty or correlation is given for no input.
     WrongShape
@@ -182,10 +193,15 @@ def propagated_together(
     >>> both.correlation.round(3).tolist()
     [[1.0, 0.0, 0.707], [0.0, 1.0, 0.707], [0.707, 0.707, 1.0]]
     """
+    if not step > 0.0:
+        raise OutOfRange("step", found=step, allowed="above zero")
     names, centres, by_name = _named(estimates)
     errors = not_negative("standard_uncertainties", _matched(standard_uncertainties, names, 0.0))
     matrix = _matrix(correlation, names)
-    values, parts, _ = _tried(_row_of_numbers(model), centres, errors, names if by_name else None)
+    values, parts, _ = _tried(
+        _row_of_numbers(model), centres, errors * step, names if by_name else None
+    )
+    parts = parts / step
     uncertainties = combined(parts, np.ones_like(parts), matrix)
     linked = parts if matrix is None else matrix @ parts
     scale = np.where(uncertainties > 0.0, uncertainties, math.nan)

@@ -3,8 +3,8 @@
 import numpy as np
 import pytest
 
-from server.science.statistics.averages import hold_means, linear_means
 from server.science.errors import OutOfRange, WrongShape
+from server.science.statistics.averages import hold_means, linear_means
 
 HOUR = 3_600_000
 DAY = 24 * HOUR

@@ -63,6 +63,16 @@ def test_a_bend_shows_where_the_first_order_is_blind():
     assert math.isnan(result.contributions["x1"])
 
 
+def test_a_small_step_comes_to_the_derivative():
+    narrow = propagated(lambda a: math.log(a), [0.6], [0.3], step=1e-3)
+    wide = propagated(lambda a: math.log(a), [0.6], [0.3])
+
+    assert narrow.sensitivities["x1"] == pytest.approx(1 / 0.6, rel=1e-6)
+    assert narrow.bends["x1"] == pytest.approx(-0.5 * (0.3 / 0.6) ** 2, rel=1e-4)
+    # By hand: (ln 0.9 - ln 0.3) / 2 = ln 3 / 2.
+    assert wide.standard_uncertainty == pytest.approx(math.log(3.0) / 2)
+
+
 def test_an_input_at_its_limit_is_tried_on_the_side_that_is_allowed():
     result = propagated(
         lambda ferric_g_l: 2.0 * not_negative("ferric_g_l", ferric_g_l),
@@ -126,6 +136,7 @@ def test_correlated_inputs_have_no_effective_degrees_of_freedom():
         (({"a": math.inf}, {"a": 0.1}), OutOfRange, "estimates"),
         (([1.0], [0.1, 0.2]), WrongShape, "estimates"),
         (([[1.0]], [0.1]), WrongShape, "estimates"),
+        (([1.0], [0.1], None, None, 0.0), OutOfRange, "step"),
     ],
 )
 def test_what_does_not_belong_together_is_named(arguments, error, says):

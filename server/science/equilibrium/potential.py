@@ -12,43 +12,16 @@ from server.science.constants import (
     STANDARD_TEMPERATURE_K,
     Metal,
 )
-from server.science.errors import OutOfRange, UnknownName
+from server.science.equilibrium.alumina import alumina_volts
+from server.science.equilibrium.entropy import (
+    couple_coefficient_v_k,
+    metal_coefficient_v_k,
+    standard_at_v,
+)
+from server.science.equilibrium.tables import DEFAULT_TABLE, PotentialTable
+from server.science.errors import OutOfRange
 from server.science.processes import Process
 
-# The one table used here; older editions differ, by 0.16 V for manganese.
-STANDARD_POTENTIAL_TABLE = "CRC Handbook of Chemistry and Physics, Electrochemical Series (Vanysek)"
-
-# Standard potentials at 25 degC against the standard hydrogen electrode, V, by metal and electrons.
-# All from the table named above. Silver was looked up in its 92nd edition. Every other figure was
-# looked up in a public copy of a textbook's appendix L that follows the table, but for copper(II),
-# whose 0.3419 V was looked up in a page quoting the handbook (the appendix rounds it to 0.34),
-# and for bismuth and tellurium, which are from memory.
-STANDARD_POTENTIALS_V: dict[tuple[str, int], float] = {
-    ("Cu", 2): 0.3419,
-    ("Cu", 1): 0.521,
-    ("Zn", 2): -0.7618,
-    ("Ni", 2): -0.257,
-    ("Co", 2): -0.28,
-    ("Ag", 1): 0.7996,
-    ("Au", 3): 1.498,
-    ("Au", 1): 1.692,
-    ("Pb", 2): -0.1262,
-    ("Sn", 2): -0.1375,
-    ("Mn", 2): -1.185,
-    ("Cd", 2): -0.403,
-    ("Cr", 3): -0.744,
-    ("Fe", 2): -0.447,
-    ("In", 3): -0.3382,
-    ("Ga", 3): -0.549,
-    ("Al", 3): -1.662,
-    ("Mg", 2): -2.372,
-    ("Bi", 3): 0.308,
-    ("Te", 4): 0.568,
-}
-# Same table: O2 + 4 H+ + 4 e = 2 H2O, looked up in both generations of the table.
-OXYGEN_WATER_V = 1.229
-# Same table: Fe3+ + e = Fe2+, looked up in the textbook's appendix.
-FERRIC_FERROUS_V = 0.771
 # Public course notes on the decomposition of alumina (looked up): with a carbon anode that burns
 # away, near 960 degC; textbooks say 1.2 V (from memory).
 ALUMINA_CARBON_VOLTS = 1.19
@@ -101,7 +74,7 @@ def nernst_v(
 
     E = E0 + (R T / n F) ln(a_ox / a_red). The standard potential is taken as it comes: a value
     tabulated at 25 degC is used at other temperatures without its own change, which for oxygen
-    is -0.85 mV/K (from memory) and for most metals less.
+    is -0.85 mV/K and for most metals less; `standard_at_v` works it out.
 
     Parameters
     ----------
@@ -130,27 +103,30 @@ def nernst_v(
 
     Example
     -------
-    Copper at an activity of 0.001.
+    Copper at an activity of one thousandth.
 
-    >>> f"{nernst_v(0.3419, 2, 0.001):.6f}"
-    '0.253161'
+    >>> f"{nernst_v(0.3419, 2, 0.001):.4f}"
+    '0.2532'
     """
     decades = np.log10(above_zero("activity_ratio", activity_ratio))
-    return np.asarray(
-        finite("standard_v", standard_v) + nernst_slope_v(temperature_k, electrons) * decades
-    )
+    slope = nernst_slope_v(temperature_k, electrons)
+    return np.asarray(finite("standard_v", standard_v) + slope * decades)
 
 
 def metal_potential_v(
     metal: Metal,
     activity: ArrayLike = 1.0,
     temperature_k: ArrayLike = STANDARD_TEMPERATURE_K,
+    table: PotentialTable = DEFAULT_TABLE,
+    *,
+    standard_at_temperature: bool = False,
 ) -> Numbers:
     """Equilibrium potential of a metal in a solution of its simple ion.
 
     The aquo ion is meant. In chloride, cyanide or ammonia most of the metal is complexed and the
-    potential is lower; its activity there is not its concentration. The standard potential is
-    that of 25 degC.
+    potential is lower; its activity there is not its concentration. The standard potential stays
+    that of 25 degC unless asked otherwise: that is how plants and course sheets do the sum, and
+    for the metals won from sulfate the difference is below 6 mV up to 65 degC.
 
     Parameters
     ----------
@@ -160,6 +136,10 @@ def metal_potential_v(
         Activity of the ion; above zero.
     temperature_k : array_like, broadcast with S
         Temperature, K; above zero.
+    table : PotentialTable
+        Where the standard potential is taken from.
+    standard_at_temperature : bool
+        Move the standard potential with the temperature, by `metal_coefficient_v_k`.
 
     Returns
     -------
@@ -169,37 +149,40 @@ def metal_potential_v(
     Raises
     ------
     UnknownName
-        If the table has no potential for that metal and valency.
+        If the table has no potential for that metal and valency, or its entropy is not held.
     OutOfRange
         If an activity or temperature is not above zero.
 
     Source
     ------
-    `STANDARD_POTENTIAL_TABLE`, with Nernst's equation as in `nernst_v`.
+    The table, with Nernst's equation as in `nernst_v`.
 
     Example
     -------
     >>> from server.science.constants import ZINC
     >>> f"{metal_potential_v(ZINC, 0.01):.4f}"
     '-0.8210'
+    >>> f"{metal_potential_v(ZINC, 0.01, 311.15, standard_at_temperature=True):.4f}"
+    '-0.8220'
     """
-    couple = (metal.symbol, metal.electrons)
-    if couple not in STANDARD_POTENTIALS_V:
-        known = [f"{symbol} with {electrons}" for symbol, electrons in STANDARD_POTENTIALS_V]
-        found = f"{metal.symbol} with {metal.electrons}"
-        raise UnknownName("standard potential (metal and electrons)", found, known)
-    return nernst_v(STANDARD_POTENTIALS_V[couple], metal.electrons, activity, temperature_k)
+    standard_v: ArrayLike = table.metal_v(metal.symbol, metal.electrons)
+    if standard_at_temperature:
+        standard_v = standard_at_v(standard_v, metal_coefficient_v_k(metal), temperature_k)
+    return nernst_v(standard_v, metal.electrons, activity, temperature_k)
 
 
 def oxygen_potential_v(
     acid_activity: ArrayLike = 1.0,
     temperature_k: ArrayLike = STANDARD_TEMPERATURE_K,
     oxygen_bar: ArrayLike = 1.0,
+    table: PotentialTable = DEFAULT_TABLE,
+    *,
+    standard_at_temperature: bool = False,
 ) -> Numbers:
     """Equilibrium potential of oxygen over water, the anode of most electrowinning cells.
 
     E = E0 + (R T / 4 F) ln(a_H^4 p_O2), with water at unit activity and the standard potential
-    of 25 degC.
+    of 25 degC unless asked otherwise; at 45 degC it lies 17 mV lower.
 
     Parameters
     ----------
@@ -209,6 +192,10 @@ def oxygen_potential_v(
         Temperature, K; above zero.
     oxygen_bar : array_like, broadcast with S
         Partial pressure of oxygen, bar; above zero.
+    table : PotentialTable
+        Where the standard potential is taken from.
+    standard_at_temperature : bool
+        Move the standard potential with the temperature, by `couple_coefficient_v_k`.
 
     Returns
     -------
@@ -222,7 +209,7 @@ def oxygen_potential_v(
 
     Source
     ------
-    `STANDARD_POTENTIAL_TABLE`, with Nernst's equation as in `nernst_v`.
+    The table, with Nernst's equation as in `nernst_v`.
 
     Example
     -------
@@ -233,7 +220,10 @@ def oxygen_potential_v(
     """
     acid = above_zero("acid_activity", acid_activity)
     ratio = acid**4 * above_zero("oxygen_bar", oxygen_bar)
-    return nernst_v(OXYGEN_WATER_V, 4, ratio, temperature_k)
+    standard_v: ArrayLike = table.couple_v("O2/H2O")
+    if standard_at_temperature:
+        standard_v = standard_at_v(standard_v, couple_coefficient_v_k("O2/H2O"), temperature_k)
+    return nernst_v(standard_v, 4, ratio, temperature_k)
 
 
 def reversible_volts(
@@ -242,12 +232,24 @@ def reversible_volts(
     acid_activity: ArrayLike = 1.0,
     temperature_k: ArrayLike = STANDARD_TEMPERATURE_K,
     oxygen_bar: ArrayLike = 1.0,
+    table: PotentialTable = DEFAULT_TABLE,
+    *,
+    standard_at_temperature: bool = False,
 ) -> Numbers:
     """Cell voltage that the reaction itself asks for, before any current flows.
 
-    Electrowinning: oxygen on an inert anode less the metal's potential. Electrorefining: zero,
-    the same couple stands on both sides. Alumina with carbon anodes: the literature's figure,
-    whatever the activities. Process "other": unknown, because its anode reaction is.
+    Electrowinning: oxygen on an inert anode less the metal's potential.
+
+    Electrorefining has none: what dissolves at the anode is what is deposited at the cathode, the
+    same couple stands on both sides, and its standard potential and the activity of its ion
+    cancel at every temperature and in every table. What is left is a difference of
+    concentration between the two faces, (R T / n F) ln of their ratio, see
+    `concentration_cell_volts`: a few millivolts, and an overpotential of mass transfer rather than
+    a voltage of the reaction.
+
+    Alumina with carbon anodes: the literature's figure, whatever the activities, or that of
+    `alumina_volts` at the given temperature. Process "other": unknown, because its anode reaction
+    is.
 
     Parameters
     ----------
@@ -261,6 +263,11 @@ def reversible_volts(
         Temperature, K; above zero.
     oxygen_bar : array_like, broadcast with S
         Partial pressure of oxygen, bar; above zero.
+    table : PotentialTable
+        Where the standard potentials are taken from.
+    standard_at_temperature : bool
+        Move the standard potentials with the temperature; as they stand at 25 degC otherwise,
+        which is how plants and course sheets do the sum.
 
     Returns
     -------
@@ -270,13 +277,13 @@ def reversible_volts(
     Raises
     ------
     UnknownName
-        If the table has no potential for the metal.
+        If the table has no potential for the metal, or its entropy is not held.
     OutOfRange
         If an activity, pressure or temperature is not above zero.
 
     Source
     ------
-    `STANDARD_POTENTIAL_TABLE`; alumina: `ALUMINA_CARBON_VOLTS`.
+    The table, with Nernst's equation as in `nernst_v`; alumina: `ALUMINA_CARBON_VOLTS`.
 
     Example
     -------
@@ -287,11 +294,76 @@ def reversible_volts(
     '0.0000'
     """
     # Both potentials are worked out for every kind, so that bad input is refused by all alike.
-    anode_v = oxygen_potential_v(acid_activity, temperature_k, oxygen_bar)
+    anode_v = oxygen_potential_v(
+        acid_activity,
+        temperature_k,
+        oxygen_bar,
+        table,
+        standard_at_temperature=standard_at_temperature,
+    )
     activity = above_zero("metal_activity", metal_activity)
     if process.kind == "electrowinning":
-        return np.asarray(anode_v - metal_potential_v(process.metal, activity, temperature_k))
+        metal_v = metal_potential_v(
+            process.metal,
+            activity,
+            temperature_k,
+            table,
+            standard_at_temperature=standard_at_temperature,
+        )
+        return np.asarray(anode_v - metal_v)
     fixed = {"electrorefining": 0.0, "molten salt electrolysis": ALUMINA_CARBON_VOLTS}
-    volts = fixed.get(process.kind, math.nan)
+    volts: ArrayLike = fixed.get(process.kind, math.nan)
+    if process.kind == "molten salt electrolysis" and standard_at_temperature:
+        volts = alumina_volts(temperature_k)
     missing = np.isnan(anode_v) | np.isnan(activity)
     return np.asarray(np.where(missing, math.nan, volts))
+
+
+def concentration_cell_volts(
+    anode_activity: ArrayLike,
+    cathode_activity: ArrayLike,
+    electrons: int,
+    temperature_k: ArrayLike = STANDARD_TEMPERATURE_K,
+) -> Numbers:
+    """Voltage that one couple on both sides asks for, when its ion is unequally strong.
+
+    (R T / n F) ln(a_anode / a_cathode): the only equilibrium voltage that an electrorefining cell
+    can have. The standard potential stands on both sides and drops out, with its temperature
+    coefficient. Under current the anode's face is the richer one.
+
+    Parameters
+    ----------
+    anode_activity : array_like, shape S
+        Activity of the ion at the face of the anode; above zero.
+    cathode_activity : array_like, broadcast with S
+        Activity of the ion at the face of the cathode; above zero.
+    electrons : int
+        Electrons exchanged; at least 1.
+    temperature_k : array_like, broadcast with S
+        Temperature, K; above zero.
+
+    Returns
+    -------
+    ndarray, broadcast shape
+        Voltage that has to be supplied, V; zero where both faces are alike. NaN where an input is
+        NaN.
+
+    Raises
+    ------
+    OutOfRange
+        If an activity or temperature is not above zero, or no electron is exchanged.
+
+    Source
+    ------
+    W. Nernst, Z. Phys. Chem. 4 (1889) 129.
+
+    Example
+    -------
+    Twice as much copper at the anode as at the cathode, 60 degC.
+
+    >>> f"{1000 * concentration_cell_volts(0.04, 0.02, 2, 333.15):.1f} mV"
+    '9.9 mV'
+    """
+    anode = above_zero("anode_activity", anode_activity)
+    cathode = above_zero("cathode_activity", cathode_activity)
+    return nernst_v(0.0, electrons, anode / cathode, temperature_k)

@@ -115,11 +115,14 @@ def test_less_trust_in_the_boilers_and_no_correlation():
         ],
         rel=5e-6,
     )
-    # The local quality there is the correction over 1.96 times its deviation.
-    assert np.abs(result.scores[:10]) / 1.96 == pytest.approx(
+    # The local quality there is the correction over 1.96 of its deviation, which is taken as at
+    # least the root of a tenth of the variance measured: so for the losses and two bleeds.
+    quality = np.array(
         [
             *(0.887628, 0.887628, 0.251487, 0.251487, 0.0242626, 0.0297734),
             *(0.000342739, 0.00022856, 0.00022856, 0.00684795),
-        ],
-        rel=5e-5,
+        ]
     )
+    tenth = np.abs(result.adjustments[:10]) / np.array(trust[:10]) * np.sqrt(10)
+    assert np.minimum(np.abs(result.scores[:10]) / 1.96, tenth) == pytest.approx(quality, rel=5e-5)
+    assert (tenth < np.abs(result.scores[:10]) / 1.96).nonzero()[0].tolist() == [4, 7, 8]

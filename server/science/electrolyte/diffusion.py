@@ -30,7 +30,7 @@ ION_DIFFUSIVITIES_M2_S: dict[str, float] = {
 # Ours: tables of limiting values differ by 3 %; the way from pure water to a bath by viscosity
 # alone is good to some 20 % (ion pairs with sulfate, acid that carries the current).
 ION_U_SHARE = 0.20
-# M. S. Moats, J. B. Hiskey and D. W. Collins, Hydrometallurgy 56 (2000) 255, abstract (looked up).
+# M. S. Moats, J. B. Hiskey and co-workers, Hydrometallurgy 56 (2000) 255, abstract (looked up).
 COPPER_ACTIVATION_J_MOL = 19_200.0
 # J. Appl. Electrochem. 37 (2007) 1093, abstract (looked up): industrial refining electrolytes.
 INDUSTRIAL_COPPER_ACTIVATION_J_MOL = 26_800.0
@@ -42,7 +42,7 @@ COPPER_REFERENCE_K = 333.15
 COPPER_REFERENCE_U_SHARE = 0.144
 # Half the distance of the two activation energies above over the square root of 3, J/mol.
 COPPER_ACTIVATION_U_J_MOL = 2_200.0
-# M. S. Moats, J. B. Hiskey and D. W. Collins, as above: what they measured.
+# M. S. Moats, J. B. Hiskey and co-workers, as above: what they measured.
 COPPER_DIFFUSION_RANGES = (
     Range("metal_g_l", 35.0, 70.0),
     Range("acid_g_l", 160.0, 250.0),
@@ -135,7 +135,7 @@ def copper_diffusivity_m2_s(
 
     Source
     ------
-    M. S. Moats, J. B. Hiskey and D. W. Collins, Hydrometallurgy 56 (2000) 255 (activation energy,
+    M. S. Moats, J. B. Hiskey and co-workers, Hydrometallurgy 56 (2000) 255 (activation energy,
     looked up in the abstract); the value at 60 degC is from memory.
 
     Example
@@ -188,7 +188,7 @@ def copper_diffusivity_with_doubt(
     -------
     >>> value, doubt = copper_diffusivity_with_doubt(318.15)
     >>> f"{value:.1e} +- {doubt:.1e}"
-    '5.8e-10 +- 8.5e-11'
+    '5.8e-10 +- 8.6e-11'
     """
     value = copper_diffusivity_m2_s(temperature_k, reference_m2_s, reference_k)
     distance = 1.0 / above_zero("reference_k", reference_k) - 1.0 / np.asarray(temperature_k)

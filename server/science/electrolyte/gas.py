@@ -59,7 +59,7 @@ def bruggeman_risen_s_m(conductivity_s_m: ArrayLike, top_gas_share: ArrayLike) -
     The plates hold one voltage, so the slices of electrolyte between them, one above the other,
     conduct side by side and their conductivities are averaged: the mean of kappa (1 - gas)^1.5
     over a gas share from zero to that at the surface. The mean gas share, half that at the top,
-    put into `bruggeman_s_m` comes within 0.1 % of it up to a fifth of gas at the top.
+    put into `bruggeman_s_m` comes within 0.2 % of it up to a fifth of gas at the top.
 
     Parameters
     ----------
@@ -85,7 +85,7 @@ def bruggeman_risen_s_m(conductivity_s_m: ArrayLike, top_gas_share: ArrayLike) -
     Example
     -------
     >>> f"{bruggeman_risen_s_m(60.0, 0.10):.2f}"
-    '55.57'
+    '55.58'
     """
     top = _gas_share("top_gas_share", top_gas_share)
     # expm1 and log1p keep the digits of a small share; at zero the mean is the whole.

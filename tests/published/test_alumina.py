@@ -2,9 +2,9 @@
 
 Looked up: lecture slides on the decomposition of alumina dissolved in cryolite (2.2 V to oxygen,
 2.21 V by another model, 1.19 V to carbon dioxide, 1.05 V to carbon monoxide, near the working
-temperature, which they do not state in what could be read). "1.2 V" in textbooks: from memory. Gibbs
-energies of the NIST-JANAF tables (Chase, 1998): from memory. Those of NASA TM-4513 (1993): worked
-out here from its coefficients as a public library (Cantera 3.2) ships them.
+temperature, which they do not state in what could be read). "1.2 V" in textbooks: from memory.
+Gibbs energies of the NIST-JANAF tables (Chase, 1998): from memory. Those of NASA TM-4513 (1993):
+worked out here from its coefficients as a public library (Cantera 3.2) ships them.
 """
 
 import pytest

@@ -1,4 +1,4 @@
-"""S. G. Bratsch, J. Phys. Chem. Ref. Data 18 (1989) 1: temperature coefficients in water at 25 degC.
+"""S. G. Bratsch, J. Phys. Chem. Ref. Data 18 (1989) 1: temperature coefficients at 25 degC.
 
 Looked up: title and abstract (based on the NBS tables), in public copies of its first page. From
 memory: every figure, in mV/K. Ours come from entropies of the NBS tables (test_nbs_tables.py), not

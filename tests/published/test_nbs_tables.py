@@ -1,9 +1,10 @@
 """Wagman et al., NBS tables of chemical thermodynamic properties (1982).
 
-J. Phys. Chem. Ref. Data 11, Suppl. 2. Looked up: a public copy of a textbook's appendix G (OpenStax Chemistry, named from
-memory), the CRC Handbook's table of aqueous ions (public copies of its first page), a public
-geochemical database naming the NBS tables (water, hydrogen, oxygen). Each prints its own number of
-digits; the textbook's nickel, cobalt and cuprous ion are of an older generation and are left out.
+J. Phys. Chem. Ref. Data 11, Suppl. 2. Looked up: a public copy of a textbook's appendix G (OpenStax
+Chemistry, named from memory), the CRC Handbook's table of aqueous ions (public copies of its first
+page), a public geochemical database naming the NBS tables (water, hydrogen, oxygen). Each prints
+its own number of digits; the textbook's nickel, cobalt and cuprous ion are of an older generation
+and are left out.
 """
 
 import pytest

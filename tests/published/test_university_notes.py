@@ -7,7 +7,7 @@ figures it is 62.979, with the exact ones 62.976.
 
 import pytest
 
-from server.science.constants import FARADAY_C_MOL, GAS_CONSTANT_J_MOL_K
+from server.science.equilibrium.gibbs import equilibrium_ln_constant, gibbs_j_mol
 from server.science.equilibrium.potential import nernst_slope_v, reversible_volts
 from server.science.processes import PROCESSES
 
@@ -20,12 +20,15 @@ def test_the_standard_cell_voltage():
 
 def test_the_gibbs_energy_of_the_notes():
     # The notes work with 0.89 V; 2 F E in kJ/mol, to the digits printed.
-    assert 2 * FARADAY_C_MOL * 0.89 / 1000 == pytest.approx(171.7, abs=0.05)
+    assert gibbs_j_mol(-0.89, electrons=2) / 1000 == pytest.approx(171.7, abs=0.05)
 
 
 def test_the_equilibrium_constant_without_the_slip():
-    ln_k = 2 * FARADAY_C_MOL * 0.89 / (GAS_CONSTANT_J_MOL_K * 328)
+    ln_k = float(equilibrium_ln_constant(0.89, electrons=2, temperature_k=328.0))
 
     assert ln_k == pytest.approx(62.979, abs=0.01)
+    # By hand with the exact constants: 2 x 96485.33212 x 0.89 / (8.314462618 x 328).
+    by_hand = 2 * 96485.33212 * 0.89 / (8.314462618 * 328)
+    assert ln_k == pytest.approx(by_hand, rel=1e-9)
     # The same through the slope: E over the slope, in decades.
     assert 0.89 / float(nernst_slope_v(328.0, 2)) * 2.302585093 == pytest.approx(ln_k, rel=1e-9)

@@ -1,4 +1,4 @@
-"""Callister, Fundamentals of Materials Science and Engineering, 3rd ed., example 16.2: zinc in acid.
+"""Callister, Fundamentals of Materials Science and Engineering, 3rd ed., example 16.2: zinc.
 
 Looked up: the book's page 677. Zinc, -0.763 V, i0 = 1e-7 A/cm2, slope +0.09 V per decade; hydrogen,
 0 V, i0 = 1e-10 A/cm2, slope -0.08 V. Solved for the current at which both potentials meet: log10 of

@@ -88,6 +88,20 @@ class Remark:
     said: Said
 
 
+@dataclass(frozen=True)
+class ModelDoubt:
+    """How far a correlation itself is believed: one more input of the budget, that nobody types.
+
+    The output's model finds `estimate` under `key`: a factor of 1 or a difference of 0.
+    """
+
+    key: str
+    label: str
+    estimate: float
+    u: float
+    unit: str = ""
+
+
 class NotServed(Exception):
     """The sum has no model for this process."""
 
@@ -97,6 +111,14 @@ class NotServed(Exception):
 
 
 def _no_remarks(_case: Case, _results: Numbers) -> Sequence[Remark]:
+    return ()
+
+
+def _no_doubts(_case: Case) -> Sequence[ModelDoubt]:
+    return ()
+
+
+def _nothing_more(_metal: Metal) -> tuple[str, ...]:
     return ()
 
 
@@ -121,8 +143,11 @@ class Sum:
     needs: frozenset[Need] = frozenset()
     own: Mapping[str, Filled] = field(default_factory=dict)
     """What this sum fills in before anything else, as a day for how much metal a day makes."""
+    also_needed: Callable[[Metal], tuple[str, ...]] = _nothing_more
+    """Keys that it cannot do without for this metal."""
     results: tuple[str, ...] = ()
     """Keys of what it can give, for the list of sums."""
+    model_doubts: Callable[[Case], Sequence[ModelDoubt]] = _no_doubts
     remarks: Callable[[Case, Numbers], Sequence[Remark]] = _no_remarks
     limits: tuple[str, ...] = ()
     """What the formula leaves out."""

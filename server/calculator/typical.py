@@ -25,9 +25,10 @@ THERMOMETER_DEGC = 0.5
 # Common practice: an electrode's place in its cell, relative standard uncertainty of the area.
 AREA_SHARE = 0.005
 
-# Common practice: a film that bubbles and flow keep thin, with half-width of what is seen, mm.
-TYPICAL_FILM_MM = 0.2
-FILM_HALF_WIDTH_MM = 0.1
+# Common practice: the film where oxygen stirs the cell, and half-width of what is seen, mm.
+STIRRED_FILM_MM = (0.1, 0.05)
+# Common practice: the film where only the solution's own convection moves it, with half-width, mm.
+QUIET_FILM_MM = (0.2, 0.1)
 
 HOURS_PER_DAY = 24.0
 
@@ -68,7 +69,7 @@ def typical_values(kind: Process) -> dict[str, Filled]:
         "density_kg_m3": Filled(kind.metal.density_kg_m3, METAL_AS_CAST),
         "starter_kg": Filled(0.0, Said(N_("none"))),
         "deposit_kg": Filled(0.0, Said(N_("none"))),
-        "film_mm": Filled(TYPICAL_FILM_MM, Said(N_("common practice, 0.1 to 0.3 mm"))),
+        "film_mm": Filled(_film_mm(kind)[0], _origin_of_film(kind)),
     }
     if math.isfinite(kind.typical_efficiency):
         efficiency_pct = rounded(percent_from_share(kind.typical_efficiency))
@@ -91,7 +92,7 @@ def usual_doubts(kind: Process) -> dict[str, Doubt]:
         "acid_g_l": Doubt(practice, share=ASSAY_SHARE),
         "temperature_degc": Doubt(practice, always=THERMOMETER_DEGC),
         "cathode_area_m2": Doubt(practice, share=AREA_SHARE),
-        "film_mm": Doubt(practice, always=float(standard_from_limit(FILM_HALF_WIDTH_MM))),
+        "film_mm": Doubt(practice, always=float(standard_from_limit(_film_mm(kind)[1]))),
     }
     low, high = kind.efficiency_band
     if math.isfinite(low):
@@ -128,6 +129,16 @@ def usual_ranges(kind: Process) -> dict[str, tuple[float, float]]:
         return {}
     band = (rounded(percent_from_share(low)), rounded(percent_from_share(high)))
     return {"volts": kind.typical_volts, "current_efficiency_pct": band}
+
+
+def _film_mm(kind: Process) -> tuple[float, float]:
+    return STIRRED_FILM_MM if kind.kind == "electrowinning" else QUIET_FILM_MM
+
+
+def _origin_of_film(kind: Process) -> Said:
+    if kind.kind == "electrowinning":
+        return Said(N_("common practice where oxygen stirs the cell"))
+    return Said(N_("common practice in a quiet cell"))
 
 
 def process_names() -> list[str]:

@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 
 from server.calculator.filled import Filled
 from server.calculator.inputs import U_PREFIX, Input, InputFault, InputsWrong, number_of
-from server.calculator.sum import Basis, Case, Output, Remark, Sum
+from server.calculator.sum import Basis, Case, ModelDoubt, Output, Remark, Sum
 from server.calculator.texts import N_, Part, Said, Word
 from server.science.errors import ScienceError
 from server.science.uncertainty.sensitivities import propagated
@@ -56,6 +56,7 @@ class Worked:
     inputs: tuple[PutIn, ...]
     results: tuple[Result, ...]
     remarks: tuple[Remark, ...]
+    model_doubts: tuple[ModelDoubt, ...] = ()
 
 
 def given(inputs: Sequence[PutIn]) -> dict[str, float]:
@@ -85,6 +86,8 @@ def put_in(
             expected = Said(N_("one of %(keys)s"), {"keys": inputs})
             faults.append(InputFault(key, Said(what, {"key": key}), typed[key], expected))
     found = [_put_in(each, a_sum.own, basis, typed, faults) for each in a_sum.inputs]
+    also = a_sum.also_needed(basis.metal)
+    found = [replace(put, is_needed=put.is_needed or put.input.key in also) for put in found]
     for put in list(found):
         if put.value is not None:
             beside = Said(N_("not needed beside: %(label)s"), {"label": Word(put.input.label)})
@@ -114,8 +117,11 @@ def worked(a_sum: Sum, basis: Basis, inputs: Sequence[PutIn]) -> Worked | None:
     doubts = {put.input.key: put.u for put in inputs if put.u is not None}
     case = Case(basis, values)
     try:
-        outputs = a_sum.outputs(case)
-        results = tuple(_result(output, case, doubts) for output in outputs)
+        of_model = tuple(a_sum.model_doubts(case))
+        estimates = values | {doubt.key: doubt.estimate for doubt in of_model}
+        doubts |= {doubt.key: doubt.u for doubt in of_model}
+        outputs = a_sum.outputs(Case(basis, estimates))
+        results = tuple(_result(output, basis, estimates, doubts) for output in outputs)
         by_key = {result.output.key: result.value for result in results}
         by_key |= {f"{U_PREFIX}{result.output.key}": result.u for result in results}
         remarks = (*_unusual(basis, inputs), *a_sum.remarks(case, by_key))
@@ -123,7 +129,7 @@ def worked(a_sum: Sum, basis: Basis, inputs: Sequence[PutIn]) -> Worked | None:
         what = N_("%(quantity)s cannot be %(found)s; it must be %(allowed)s.")
         parts = {"quantity": error.quantity, "found": str(error.found), "allowed": error.allowed}
         raise InputsWrong([InputFault("", Said(what, parts), str(error.found))]) from error
-    return Worked(a_sum, basis, tuple(inputs), results, remarks)
+    return Worked(a_sum, basis, tuple(inputs), results, remarks, of_model)
 
 
 def missing(inputs: Sequence[PutIn]) -> list[Input]:
@@ -187,8 +193,10 @@ def _typed_u(found: Input, text: str, faults: list[InputFault]) -> float | None:
     return None
 
 
-def _result(output: Output, case: Case, doubts: Mapping[str, float]) -> Result:
-    budget = propagated(lambda **values: output.model(values), case.values, doubts)
+def _result(
+    output: Output, basis: Basis, estimates: Mapping[str, float], doubts: Mapping[str, float]
+) -> Result:
+    budget = propagated(lambda **values: output.model(values), estimates, doubts)
     shares = {
         key: share
         for key, share in budget.contributions.items()
@@ -196,7 +204,7 @@ def _result(output: Output, case: Case, doubts: Mapping[str, float]) -> Result:
     }
     return Result(
         output=output,
-        unit=output.unit.replace("¤", case.basis.currency or N_("money")),
+        unit=output.unit.replace("¤", basis.currency or N_("money")),
         value=budget.value,
         u=budget.standard_uncertainty,
         shares=dict(sorted(shares.items(), key=lambda pair: -pair[1])),

@@ -1,5 +1,6 @@
 """The sums that a metallurgist does daily: which there are, and one worked out."""
 
+from collections.abc import Mapping
 from math import isfinite
 from typing import Annotated, Any
 
@@ -167,6 +168,8 @@ def _input(found: Input) -> CalculatorInput:
 
 def _answer(answer: Worked, link: str) -> CalculatorAnswer:
     basis, first = answer.basis, answer.results[0].value
+    labels = {put.input.key: put.input.label for put in answer.inputs}
+    labels |= {doubt.key: doubt.label for doubt in answer.model_doubts}
     return CalculatorAnswer(
         name=answer.sum.name,
         title=answer.sum.title,
@@ -175,7 +178,7 @@ def _answer(answer: Worked, link: str) -> CalculatorAnswer:
         metal=basis.metal.symbol,
         electrons=basis.metal.electrons,
         inputs=[_put_in(put) for put in answer.inputs],
-        results=[_result(result, first) for result in answer.results],
+        results=[_result(result, first, labels) for result in answer.results],
         remarks=[CalculatorRemark(kind=r.kind, text=told(r.said)) for r in answer.remarks],
         sources=list(answer.sum.sources),
         limits=list(answer.sum.limits),
@@ -197,7 +200,7 @@ def _put_in(put: PutIn) -> CalculatorPutIn:
     )
 
 
-def _result(result: Result, first: float) -> CalculatorResult:
+def _result(result: Result, first: float, labels: Mapping[str, str]) -> CalculatorResult:
     is_part = result.output.place == "part" and isfinite(first) and first != 0
     value = number(result.value, decimals_of(result.value, 0.0), result.unit)
     return CalculatorResult(
@@ -212,7 +215,7 @@ def _result(result: Result, first: float) -> CalculatorResult:
         share_pct=float(percent_from_share(result.value / first)) if is_part else None,
         note=told(result.output.note) if result.output.note else "",
         budget=[
-            CalculatorShare(key=key, share_pct=float(percent_from_share(share)))
+            CalculatorShare(key=key, label=labels[key], share_pct=float(percent_from_share(share)))
             for key, share in result.shares.items()
         ],
     )

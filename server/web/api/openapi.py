@@ -43,6 +43,7 @@ _TAGS = [
     {"name": "accounts", "description": "Charge, metal, efficiency and energy of a period."},
     {"name": "flags", "description": "What the watch says of the cells."},
     {"name": "plant", "description": "The tankhouse, its sections and cells."},
+    {"name": "calculator", "description": "The sums of a day, worked out with their doubt."},
     {"name": "held and suspect", "description": "What could not be taken, or is not believed."},
     {"name": "corrections", "description": "What was recorded wrongly."},
     {"name": "server", "description": "Health, metrics and this document."},

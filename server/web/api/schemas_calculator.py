@@ -103,6 +103,8 @@ class CalculatorShare(Answer):
     """How much of the variance of a result is from one input."""
 
     key: str
+    """Of an input, or of a correlation whose own doubt counts."""
+    label: str
     share_pct: float
 
 
@@ -172,7 +174,7 @@ class CalculatorAnswer(Answer):
                         "place": "figure",
                         "share_pct": None,
                         "note": "",
-                        "budget": [{"key": "current_ka", "share_pct": 100.0}],
+                        "budget": [{"key": "current_ka", "label": "Current", "share_pct": 100.0}],
                     }
                 ],
                 "remarks": [],

@@ -2,12 +2,12 @@
 
 import re
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
-from math import isfinite
+from dataclasses import dataclass, replace
+from math import isfinite, nan
 
 from markupsafe import Markup, escape
 
-from server.calculator.sum import Remark
+from server.calculator.sum import ModelDoubt, Remark
 from server.calculator.work_out import PutIn, Result, Worked
 from server.web.filters import number, number_typed, percent
 from server.web.i18n import gettext as _
@@ -17,6 +17,8 @@ _INDEX = re.compile(r"_(\w+)")
 
 LEAST_SHARE = 0.005
 """Share of the variance below which an input is not worth a line."""
+SMALL_SHARE = 0.1
+"""Share of the variance below which it is written with a decimal."""
 
 
 @dataclass(frozen=True)
@@ -65,7 +67,7 @@ class Line:
     value: str
     doubt: str
     unit: str
-    share: str
+    share: str = ""
 
 
 @dataclass(frozen=True)
@@ -98,13 +100,16 @@ def answer_of(worked: Worked) -> Answer:
     of_place: dict[str, list[Figure]] = {"figure": [], "part": [], "sensitivity": []}
     for result in worked.results:
         of_place[result.output.place].append(_figure(result, first))
-    by_key = {put.input.key: put for put in worked.inputs}
+    lines = {put.input.key: _line_of_input(put) for put in worked.inputs}
+    lines |= {doubt.key: _line_of_model(doubt) for doubt in worked.model_doubts}
     return Answer(
         figures=of_place["figure"],
         parts=of_place["part"],
         sensitivities=of_place["sensitivity"],
         budget=[
-            _line(by_key[key], share) for key, share in first.shares.items() if share >= LEAST_SHARE
+            replace(lines[key], share=_percent(share))
+            for key, share in first.shares.items()
+            if share >= LEAST_SHARE
         ],
         remarks=[_remark(remark) for remark in worked.remarks],
     )
@@ -164,14 +169,19 @@ def _lowered(formula: str) -> Markup:
     return Markup(_INDEX.sub(r"<sub>\1</sub>", str(escape(formula))))  # noqa: S704 - escaped
 
 
-def _line(put: PutIn, share: float) -> Line:
-    return Line(
-        label=_(put.input.label),
-        value=figures(put.value if put.value is not None else float("nan")),
-        doubt=figures(put.u if put.u is not None else float("nan"), 3),
-        unit=put.unit,
-        share=percent(share, 1 if share < 0.1 else 0),
-    )
+def _line_of_input(put: PutIn) -> Line:
+    value, u = (number if number is not None else nan for number in (put.value, put.u))
+    return Line(_(put.input.label), figures(value), figures(u, 3), put.unit)
+
+
+def _line_of_model(doubt: ModelDoubt) -> Line:
+    if doubt.estimate == 1:
+        return Line(_(doubt.label), "", percent(doubt.u), "%")
+    return Line(_(doubt.label), "", figures(doubt.u, 3), doubt.unit)
+
+
+def _percent(share: float) -> str:
+    return percent(share, 1 if share < SMALL_SHARE else 0)
 
 
 def _remark(remark: Remark) -> tuple[str, str]:

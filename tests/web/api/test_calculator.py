@@ -139,8 +139,8 @@ def test_the_doubt_of_an_efficiency_has_its_budget(client, section):
     found, _ = asked(
         client,
         "efficiency-from-weight",
-        **{"net_kg": 4850, "u_net_kg": 5, "starter_kg": 0, "u_starter_kg": 0},
-        **{"current_ka": 30, "u_current_ka": 0.15, "hours": 144, "u_hours": 0.25, "cells": 1},
+        net_kg=4850, u_net_kg=5, starter_kg=0, u_starter_kg=0,
+        current_ka=30, u_current_ka=0.15, hours=144, u_hours=0.25, cells=1,
     )
 
     efficiency = found["current_efficiency_pct"]
@@ -158,8 +158,8 @@ def test_time_to_half_a_gram_of_silver(client, section):
         client,
         "time-to-weight",
         process="silver electrorefining",
-        **{"target_kg": 0.0005, "cathodes": 1},
-        **{"current_ka": 0.00075, "current_efficiency_pct": 100},
+        target_kg=0.0005, cathodes=1,
+        current_ka=0.00075, current_efficiency_pct=100,
     )
 
     assert found["hours"]["value"] == pytest.approx(0.5 / (0.75 * K_AG), rel=1e-6)
@@ -171,8 +171,8 @@ def test_a_hard_short_in_refining(client, section):
         client,
         "short-current",
         process="copper electrorefining",
-        **{"deviation_mv": -11.5385, "differential_resistance_uohm": 10, "current_ka": 30},
-        **{"volts": 0.3, "current_efficiency_pct": 100},
+        deviation_mv=-11.5385, differential_resistance_uohm=10, current_ka=30,
+        volts=0.3, current_efficiency_pct=100,
     )
 
     assert found["short_ka"]["value"] == pytest.approx(1.15385, rel=1e-5)
@@ -186,8 +186,8 @@ def test_a_hard_short_in_winning_costs_energy_too(client, section):
     found, told = asked(
         client,
         "short-current",
-        **{"deviation_mv": -16.53, "differential_resistance_uohm": 833.3333 / 50},
-        **{"current_ka": 30, "volts": 2.0, "current_efficiency_pct": 100},
+        deviation_mv=-16.53, differential_resistance_uohm=833.3333 / 50,
+        current_ka=30, volts=2.0, current_efficiency_pct=100,
     )
 
     assert found["short_ka"]["value"] == pytest.approx(0.991736, rel=1e-3)
@@ -199,7 +199,7 @@ def test_a_film_of_a_fifth_of_a_millimetre(client, section):
     found, _ = asked(
         client,
         "limiting-current",
-        **{"metal_g_l": 45, "diffusivity_um2_s": 700, "film_mm": 0.2},
+        metal_g_l=45, diffusivity_um2_s=700, film_mm=0.2,
         current_density_a_m2=300,
     )
 
@@ -248,8 +248,8 @@ def test_any_metal_goes_with_process_other(client, section):
     found, told = asked(
         client,
         "charge-to-mass",
-        **{"process": "other", "metal": "Cr", "electrons": 3},
-        **{"current_ka": 1, "hours": 1, "cells": 1, "current_efficiency_pct": 100},
+        process="other", metal="Cr", electrons=3,
+        current_ka=1, hours=1, cells=1, current_efficiency_pct=100,
     )
 
     by_hand = 51.9961 / (3 * FARADAY_C_MOL) * 3600

@@ -9,6 +9,8 @@ from server.science.errors import OutOfRange
 # Rousseeuw & Croux, J. Am. Stat. Assoc. 88 (1993) 1273: 1 / inverse normal of 3/4, which makes the
 # median absolute deviation of normal data estimate their standard deviation.
 NORMAL_CONSISTENCY = 1.4826022185056018
+# d2 for ranges of two: mean distance between two normal values in their deviation, 2 / sqrt(pi).
+MEAN_RANGE_OF_TWO = 1.1283791670955126
 
 
 def median(values: ArrayLike, axis: int = -1) -> Numbers:
@@ -132,6 +134,47 @@ def robust_sd(values: ArrayLike, axis: int = -1, floor: float = 0.0) -> Numbers:
     least = float(not_negative("floor", floor))
     scale = NORMAL_CONSISTENCY * median_absolute_deviation(values, axis=axis)
     return np.asarray(np.maximum(scale, least))
+
+
+def moving_range_sd(values: ArrayLike, axis: int = -1) -> Numbers:
+    """Standard deviation from one reading to the next, from the mean moving range.
+
+    The mean distance of neighbours over d2 = 1.128: right for independent normal readings, and
+    hardly moved by a level that drifts or steps, which would widen the deviation of them all. It
+    is what limits of a chart of single readings are drawn with. Neighbours of which one is
+    missing are left out; readings that remember the one before make it too small.
+
+    Parameters
+    ----------
+    values : array_like, shape (..., n, ...)
+        Readings in their order, NaN where missing.
+    axis : int
+        The axis to work along.
+
+    Returns
+    -------
+    ndarray, the shape without that axis
+        Standard deviation, unit of the values. NaN where no two neighbours are there.
+
+    Raises
+    ------
+    OutOfRange
+        If any value is infinite.
+
+    Source
+    ------
+    D. C. Montgomery, Introduction to Statistical Quality Control, chart for individuals.
+
+    Example
+    -------
+    >>> f"{moving_range_sd([2.0, 2.1, 2.0, 2.1, 2.6, 2.7]):.3f}"
+    '0.160'
+    """
+    numbers = np.moveaxis(np.atleast_1d(finite("values", values)), axis, -1)
+    ranges = np.abs(np.diff(numbers, axis=-1))
+    pairs = np.isfinite(ranges).sum(axis=-1)
+    mean = np.nansum(ranges, axis=-1) / np.where(pairs > 0, pairs, np.nan)
+    return np.asarray(mean / MEAN_RANGE_OF_TWO)
 
 
 def hampel_scores(values: ArrayLike, axis: int = -1, floor: float = 0.0) -> Numbers:

@@ -12,6 +12,7 @@ from server.science.statistics.spread import (
     is_outlying,
     median,
     median_absolute_deviation,
+    moving_range_sd,
     robust_sd,
 )
 
@@ -96,6 +97,27 @@ def test_a_spread_grows_with_its_values():
     doubled = median_absolute_deviation(2.0 * values + 7.0)
 
     assert doubled == pytest.approx(2.0 * median_absolute_deviation(values))
+
+
+def test_a_step_of_the_level_hardly_moves_the_deviation_of_neighbours():
+    values = np.random.default_rng(seed=5).normal(size=400)
+    stepped = values + np.where(np.arange(400) < 200, 0.0, 10.0)
+
+    assert moving_range_sd(values) == pytest.approx(1.0, rel=0.1)
+    assert moving_range_sd(stepped) == pytest.approx(moving_range_sd(values), rel=0.03)
+
+
+def test_neighbours_of_a_missing_reading_are_no_pair():
+    # By hand: distances 1 and 3 over d2, the mean 2.
+    assert moving_range_sd([1.0, 2.0, np.nan, 9.0, 6.0]) == pytest.approx(2 / 1.12837917)
+
+
+def test_single_readings_have_no_deviation_of_neighbours():
+    rows = moving_range_sd([[1.0, np.nan, 2.0], [np.nan] * 3, [1.0, 1.0, np.nan]])
+
+    assert np.isnan(rows).tolist() == [True, True, False]
+    assert np.isnan(moving_range_sd([1.0]))
+    assert moving_range_sd([[1.0, 5.0], [2.0, 5.0]], axis=0).shape == (2,)
 
 
 @pytest.mark.parametrize(

@@ -24,8 +24,8 @@ def acid_conductivity_s_m(
 
     kappa = c exp(1.1104 + (199.475 - 16097.781 c) c + (3916.95 - 99406 c - 721960 / T) / T) in
     S/cm, with c in mol/cm3. The coefficients are from memory. They meet Kohlrausch's table at
-    18 degC (from memory too) within 2 %, but another correlation of battery models, looked up, lies
-    8 to 12 % higher at 25 degC.
+    18 degC (from memory too) within 2 %. Another correlation of battery models, looked up, lies
+    11 % higher at 25 degC whatever the acid, as if it were for another temperature.
 
     Parameters
     ----------

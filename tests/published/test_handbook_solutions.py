@@ -1,6 +1,6 @@
 """CRC Handbook of Chemistry and Physics, "Concentrative Properties of Aqueous Solutions", 20 degC.
 
-Status: looked up, in a public transcription of the table of the 102nd edition (2021), which goes
+Status: looked up, in a public copy of the table of the 102nd edition (2021), which goes
 back to A. V. Wolf (1966). Densities are printed to 0.1 kg/m3, viscosities to 0.001 mPa s. They are
 not what the model was made from, so tolerances are the differences between two collections of
 measurements: 0.15 % of a density and 3 % of a viscosity, more where said.

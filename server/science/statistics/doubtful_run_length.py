@@ -12,7 +12,7 @@ from server.science.statistics.run_length import cusum_chain, cusum_run_length
 from server.science.statistics.signal_chain import each_shift
 
 # Tried here: enough points for the mean and for the standard deviation to hold four digits.
-_MEAN_POINTS = 20
+_MEAN_POINTS = 48
 _SCALE_POINTS = 16
 
 

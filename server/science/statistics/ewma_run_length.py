@@ -12,7 +12,7 @@ from server.science.statistics.signal_chain import SignalChain, each_shift, norm
 # range; S. Knoth, Seq. Anal. 22 (2003) 241, does so too (from memory).
 HELD_AT = -6.0
 # Tried here: once the limits have opened to within this share, they are taken as open.
-_OPEN = 1e-8
+_OPEN = 1e-7
 
 
 def ewma_run_length(

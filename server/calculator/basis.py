@@ -1,6 +1,7 @@
 """Which section or process a sum is worked out for, as it was asked."""
 
 from collections.abc import Mapping
+from dataclasses import replace
 
 from sqlalchemy.orm import Session
 
@@ -17,6 +18,11 @@ BASIS_KEYS = ("section", "process", "metal", "electrons")
 """Keys of an address that say what a sum is worked out for."""
 
 
+def basis_keys(a_sum: Sum) -> tuple[str, ...]:
+    """Those keys, and the one of the sum's option."""
+    return (*BASIS_KEYS, a_sum.option.key) if a_sum.option else BASIS_KEYS
+
+
 def chosen_basis(
     session: Session, house: House, a_sum: Sum, asked: Mapping[str, str], now_ms: int
 ) -> Basis:
@@ -27,9 +33,21 @@ def chosen_basis(
     NotFound
         If the house has no such section.
     InputsWrong
-        If there is no such process or metal, or the two contradict each other.
+        If there is no such process, metal or choice, or they contradict each other.
     """
-    name = asked.get("process", "").strip()
+    basis = _section_or_process(session, house, a_sum, asked, now_ms)
+    if a_sum.option is None:
+        return basis
+    choices = a_sum.option.choices(basis.process)
+    key, found = a_sum.option.key, asked.get(a_sum.option.key, "").strip()
+    if found and found not in choices:
+        raise InputsWrong([_unknown(key, found, (), list(choices))])
+    return replace(basis, choice=found or next(iter(choices), ""))
+
+
+def _section_or_process(
+    session: Session, house: House, a_sum: Sum, asked: Mapping[str, str], now_ms: int
+) -> Basis:
     of_process = [key for key in BASIS_KEYS[1:] if asked.get(key, "").strip()]
     if asked.get("section", "").strip():
         if of_process:
@@ -41,8 +59,9 @@ def chosen_basis(
     if not of_process:
         return section_basis(session, house, house.sections[0], now_ms, a_sum.needs)
     metal = asked.get("metal", "").strip() or None
+    name = asked.get("process", "").strip() or "other"
     try:
-        return typical_basis(house, now_ms, name or "other", metal, _electrons(asked))
+        return typical_basis(house, now_ms, name, metal, _electrons(asked))
     except UnknownName as error:
         key = "process" if error.quantity == "process" else "metal"
         known = process_names() if key == "process" else list(METALS)
@@ -70,6 +89,8 @@ def _electrons(asked: Mapping[str, str]) -> int | None:
 
 def _unknown(key: str, found: str, near: tuple[str, ...], known: list[str]) -> InputFault:
     what = Said(N_("There is no %(key)s “%(found)s” here."), {"key": key, "found": found})
+    if not known:
+        return InputFault(key, what, found, Said(N_("nothing: there is no choice here")))
     if near:
         return InputFault(key, what, found, Said(N_("perhaps %(near)s"), {"near": ", ".join(near)}))
     return InputFault(key, what, found, Said(N_("one of %(keys)s"), {"keys": ", ".join(known)}))

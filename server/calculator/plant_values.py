@@ -25,6 +25,7 @@ from server.science.units import (
     hours_from_seconds,
     ka_from_amps,
     microohm_from_ohm,
+    millimetres_from_metres,
     millivolts_from_volts,
     percent_from_share,
     seconds_from_hours,
@@ -106,6 +107,9 @@ def _set_up(plan: SectionPlan, terms: SectionTerms) -> dict[str, Filled]:
             rounded(float(microohm_from_ohm(resistance_ohm(plan, terms))), 4), of_resistance
         ),
     }
+    if terms.electrode_gap_m is not None:
+        gap_mm = rounded(float(millimetres_from_metres(terms.electrode_gap_m)))
+        found["gap_mm"] = Filled(gap_mm, Said(N_("gap, set-up")))
     if terms.rectifier_efficiency is not None:
         found["rectifier_efficiency_pct"] = Filled(
             rounded(float(percent_from_share(terms.rectifier_efficiency))),

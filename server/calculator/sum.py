@@ -37,6 +37,8 @@ class Basis:
     doubts: Mapping[str, Doubt] = field(default_factory=dict)
     usual: Mapping[str, tuple[float, float]] = field(default_factory=dict)
     """What is usual for the process, lowest and highest."""
+    choice: str = ""
+    """What was chosen of the sum's option, where it has one for this process."""
 
     @property
     def metal(self) -> Metal:
@@ -74,6 +76,8 @@ class Output:
     """A figure by itself, a part of the first figure, or how that answers to an input."""
     note: Said | None = None
     """Where a part comes from, and how sure that is."""
+    has_doubt: bool = True
+    """Whether its standard uncertainty is worked out."""
 
 
 @dataclass(frozen=True)
@@ -102,6 +106,16 @@ class ModelDoubt:
     unit: str = ""
 
 
+@dataclass(frozen=True)
+class Option:
+    """What is chosen from a few beside the numbers, such as the kind of anodes."""
+
+    key: str
+    label: str
+    choices: Callable[[Process], Mapping[str, str]]
+    """Words by the value in an address, the usual one first; empty where there is no choice."""
+
+
 class NotServed(Exception):
     """The sum has no model for this process."""
 
@@ -119,6 +133,10 @@ def _no_doubts(_case: Case) -> Sequence[ModelDoubt]:
 
 
 def _nothing_more(_metal: Metal) -> tuple[str, ...]:
+    return ()
+
+
+def _no_more_sources(_case: Case) -> tuple[str, ...]:
     return ()
 
 
@@ -155,6 +173,9 @@ class Sum:
     """What may hurt whoever acts on the result."""
     check: Callable[[Basis], None] = _serves_all
     """Raises NotServed where there is no model for the process."""
+    option: Option | None = None
+    more_sources: Callable[[Case], tuple[str, ...]] = _no_more_sources
+    """Sources that depend on what was put in."""
     served: Sequence[str] = ()
     """Names of the processes it has a model for; empty where that is all of them."""
 

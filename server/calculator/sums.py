@@ -2,6 +2,7 @@
 
 from difflib import get_close_matches
 
+from server.calculator.cell_voltage import CELL_VOLTAGE
 from server.calculator.charge_to_mass import CHARGE_TO_MASS
 from server.calculator.deposit_thickness import DEPOSIT_THICKNESS
 from server.calculator.efficiency_from_weight import EFFICIENCY_FROM_WEIGHT
@@ -18,6 +19,7 @@ SUMS: dict[str, Sum] = {
         CHARGE_TO_MASS,
         EFFICIENCY_FROM_WEIGHT,
         ENERGY_PER_TONNE,
+        CELL_VOLTAGE,
         LIMITING_CURRENT,
         SHORT_CURRENT,
         TIME_TO_WEIGHT,

@@ -7,7 +7,12 @@ from server.calculator.sum import Basis
 from server.calculator.texts import N_, Said
 from server.science.processes import PROCESSES, Process, process
 from server.science.uncertainty.propagation import standard_from_limit
-from server.science.units import percent_from_share
+from server.science.units import (
+    degc_from_kelvin,
+    millimetres_from_metres,
+    percent_from_share,
+)
+from server.science.voltage.cells import CELL_MODELS
 from server.storage.plant import House
 
 TYPICAL = Said(N_("typical of the process"))
@@ -25,6 +30,10 @@ THERMOMETER_DEGC = 0.5
 # Common practice: an electrode's place in its cell, relative standard uncertainty of the area.
 AREA_SHARE = 0.005
 
+# Common practice: how evenly electrodes hang, standard uncertainty of the gap, mm.
+GAP_MM = 1.0
+# Common practice: relative standard uncertainty of a conductivity measured at the plant.
+CONDUCTIVITY_SHARE = 0.02
 # Common practice: the film where oxygen stirs the cell, and half-width of what is seen, mm.
 STIRRED_FILM_MM = (0.1, 0.05)
 # Common practice: the film where only the solution's own convection moves it, with half-width, mm.
@@ -50,6 +59,7 @@ def typical_basis(
         currency=house.currency,
         table=terms.standard_potentials,
         filled=typical_values(kind)
+        | _usual_current(kind)
         | {"energy_price_per_kwh": price_of(terms.energy_price_per_kwh)},
         doubts=usual_doubts(kind),
         usual=usual_ranges(kind),
@@ -71,11 +81,34 @@ def typical_values(kind: Process) -> dict[str, Filled]:
         "deposit_kg": Filled(0.0, Said(N_("none"))),
         "film_mm": Filled(_film_mm(kind)[0], _origin_of_film(kind)),
     }
+    found |= _usual_conditions(kind)
     if math.isfinite(kind.typical_efficiency):
         efficiency_pct = rounded(percent_from_share(kind.typical_efficiency))
         found["current_efficiency_pct"] = Filled(efficiency_pct, TYPICAL)
         found["volts"] = Filled(rounded(sum(kind.typical_volts) / 2), TYPICAL)
     return found
+
+
+def _usual_conditions(kind: Process) -> dict[str, Filled]:
+    """Bath and gap in the middle of what plants of this kind run, where there is a model of it."""
+    model = CELL_MODELS.get(kind.name)
+    if model is None:
+        return {}
+    usual = model.usual
+    return {
+        "metal_g_l": Filled(usual.metal_g_l, TYPICAL),
+        "acid_g_l": Filled(usual.acid_g_l, TYPICAL),
+        "temperature_degc": Filled(rounded(float(degc_from_kelvin(usual.temperature_k))), TYPICAL),
+        "gap_mm": Filled(rounded(float(millimetres_from_metres(usual.gap_m))), TYPICAL),
+    }
+
+
+def _usual_current(kind: Process) -> dict[str, Filled]:
+    """The current density of such plants; a section has its own."""
+    model = CELL_MODELS.get(kind.name)
+    if model is None:
+        return {}
+    return {"current_density_a_m2": Filled(model.usual.current_density_a_m2, TYPICAL)}
 
 
 def usual_doubts(kind: Process) -> dict[str, Doubt]:
@@ -92,6 +125,8 @@ def usual_doubts(kind: Process) -> dict[str, Doubt]:
         "acid_g_l": Doubt(practice, share=ASSAY_SHARE),
         "temperature_degc": Doubt(practice, always=THERMOMETER_DEGC),
         "cathode_area_m2": Doubt(practice, share=AREA_SHARE),
+        "gap_mm": Doubt(practice, always=GAP_MM),
+        "conductivity_s_m": Doubt(practice, share=CONDUCTIVITY_SHARE),
         "film_mm": Doubt(practice, always=float(standard_from_limit(_film_mm(kind)[1]))),
     }
     low, high = kind.efficiency_band

@@ -57,6 +57,7 @@ class Worked:
     results: tuple[Result, ...]
     remarks: tuple[Remark, ...]
     model_doubts: tuple[ModelDoubt, ...] = ()
+    sources: tuple[str, ...] = ()
 
 
 def given(inputs: Sequence[PutIn]) -> dict[str, float]:
@@ -89,14 +90,8 @@ def put_in(
     also = a_sum.also_needed(basis.metal)
     found = [replace(put, is_needed=put.is_needed or put.input.key in also) for put in found]
     for put in list(found):
-        if put.value is not None:
-            beside = Said(N_("not needed beside: %(label)s"), {"label": Word(put.input.label)})
-            found = [
-                replace(each, value=None, u=None, origin=beside, u_origin=None, is_needed=False)
-                if each.input.key in put.input.replaces
-                else each
-                for each in found
-            ]
+        if put.value is not None and put.input.replaces:
+            found = _beside(put, found)
     return tuple(found), faults
 
 
@@ -129,7 +124,23 @@ def worked(a_sum: Sum, basis: Basis, inputs: Sequence[PutIn]) -> Worked | None:
         what = N_("%(quantity)s cannot be %(found)s; it must be %(allowed)s.")
         parts = {"quantity": error.quantity, "found": str(error.found), "allowed": error.allowed}
         raise InputsWrong([InputFault("", Said(what, parts), str(error.found))]) from error
-    return Worked(a_sum, basis, tuple(inputs), results, remarks, of_model)
+    sources = (*a_sum.sources, *a_sum.more_sources(case))
+    return Worked(a_sum, basis, tuple(inputs), results, remarks, of_model, sources)
+
+
+def _beside(put: PutIn, inputs: list[PutIn]) -> list[PutIn]:
+    """Leave out what an input replaces; or itself, where it is filled in and they are typed."""
+    replaced = [each for each in inputs if each.input.key in put.input.replaces]
+    wins = put.is_typed or not any(each.is_typed for each in replaced)
+    left_out = replaced if wins else [put]
+    labels = [put] if wins else [each for each in replaced if each.is_typed]
+    beside = Said(N_("not needed beside: %(label)s"), {"label": Word(labels[0].input.label)})
+    return [
+        replace(each, value=None, u=None, origin=beside, u_origin=None, is_needed=False)
+        if each in left_out
+        else each
+        for each in inputs
+    ]
 
 
 def missing(inputs: Sequence[PutIn]) -> list[Input]:
@@ -196,6 +207,7 @@ def _typed_u(found: Input, text: str, faults: list[InputFault]) -> float | None:
 def _result(
     output: Output, basis: Basis, estimates: Mapping[str, float], doubts: Mapping[str, float]
 ) -> Result:
+    doubts = doubts if output.has_doubt else {}
     budget = propagated(lambda **values: output.model(values), estimates, doubts)
     shares = {
         key: share

@@ -4,7 +4,7 @@ from collections.abc import Mapping, Sequence
 from urllib.parse import urlencode
 
 from server.calculator.inputs import InputFault, InputsWrong
-from server.calculator.sum import Basis
+from server.calculator.sum import Basis, Sum
 from server.calculator.texts import N_, Said
 from server.calculator.work_out import PutIn, given
 from server.web.filters import number_typed
@@ -24,9 +24,13 @@ def basis_query(basis: Basis) -> dict[str, str]:
     }
 
 
-def query_of(basis: Basis, inputs: Sequence[PutIn]) -> dict[str, str]:
+def query_of(a_sum: Sum, basis: Basis, inputs: Sequence[PutIn]) -> dict[str, str]:
     """The parameters that give this sum again."""
-    return basis_query(basis) | {key: number_typed(value) for key, value in given(inputs).items()}
+    chosen = {}
+    if a_sum.option and basis.choice != next(iter(a_sum.option.choices(basis.process)), ""):
+        chosen = {a_sum.option.key: basis.choice}
+    typed = {key: number_typed(value) for key, value in given(inputs).items()}
+    return basis_query(basis) | chosen | typed
 
 
 def with_query(path: str, query: Mapping[str, str]) -> str:

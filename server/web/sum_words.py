@@ -46,13 +46,13 @@ def figures(value: float, digits: int = _DIGITS) -> str:
     return number(value, decimals)
 
 
-def decimals_of(value: float, u: float) -> int:
-    """Decimals that a value deserves: two digits of its doubt, six digits where it has none."""
+def decimals_of(value: float, u: float, digits: int = _DIGITS) -> int:
+    """Decimals that a value deserves: two digits of its doubt, or so many where it has none."""
     if math.isfinite(u) and u > 0:
         return min(max(_DIGITS_OF_DOUBT - 1 - math.floor(math.log10(u)), 0), _MOST_DECIMALS)
     if value == 0 or not math.isfinite(value):
         return 0
-    return min(max(_DIGITS - 1 - math.floor(math.log10(abs(value))), 0), _MOST_DECIMALS)
+    return min(max(digits - 1 - math.floor(math.log10(abs(value))), 0), _MOST_DECIMALS)
 
 
 def _part(part: Part) -> str:

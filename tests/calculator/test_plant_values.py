@@ -57,7 +57,8 @@ def test_without_lots_the_target_stands(session):
 
     assert found["current_efficiency_pct"].value == 93.0
     assert found["volts"].value == 2.0
-    assert {"net_kg", "deviation_mv", "metal_g_l"}.isdisjoint(found)
+    assert found["metal_g_l"].origin.text == "typical of the process"
+    assert {"net_kg", "deviation_mv"}.isdisjoint(found)
 
 
 def test_the_last_lot_brings_its_weight_and_the_charge_of_its_cathodes(session):
@@ -127,4 +128,13 @@ def test_a_withdrawn_assay_does_not_count(session):
     make_assay(session, section.id, at_ms=NOW_MS, metal_g_l=38.0)
     make_assay(session, section.id, at_ms=NOW_MS, metal_g_l=38.0, revision=1, is_void=1)
 
-    assert "metal_g_l" not in basis_of(session, "A", "assay").filled
+    found = basis_of(session, "A", "assay").filled["metal_g_l"]
+    assert found.origin.text == "typical of the process"
+
+
+def test_the_gap_is_the_plant_s_where_it_states_one(session):
+    make_section(session, name="A", electrode_gap_m=0.038)
+
+    found = basis_of(session, "A").filled["gap_mm"]
+
+    assert (found.value, found.origin.text) == (38.0, "gap, set-up")

@@ -6,7 +6,7 @@ from typing import Annotated, Any
 
 from fastapi import Path, Request
 
-from server.calculator.basis import BASIS_KEYS, chosen_basis
+from server.calculator.basis import basis_keys, chosen_basis
 from server.calculator.inputs import Input, InputFault, InputsWrong
 from server.calculator.sum import NotServed, Sum
 from server.calculator.sums import SUMS, sum_named
@@ -55,6 +55,10 @@ def _parameters() -> list[dict[str, Any]]:
         "electrons": ("Electrons that deposit one atom, with process `other`.",
                       {"type": "integer", "minimum": 1, "maximum": 8}),
     }  # fmt: skip
+    for found in SUMS.values():
+        if found.option:
+            words = f"{found.option.label}. Of {found.name}."
+            about[found.option.key] = (words, {"type": "string", "maxLength": 40})
     told_of: dict[str, list[str]] = {}
     inputs: dict[str, Input] = {}
     for name, found in SUMS.items():
@@ -103,7 +107,7 @@ def get_calculator_sum(
         try:
             asked = asked_once(request.query_params.multi_items())
             basis = chosen_basis(db, house, a_sum, asked, now_ms)
-            typed = {key: text for key, text in asked.items() if key not in BASIS_KEYS}
+            typed = {key: text for key, text in asked.items() if key not in basis_keys(a_sum)}
             inputs, faults = put_in(a_sum, basis, typed)
             if faults:
                 raise InputsWrong(faults)
@@ -115,7 +119,7 @@ def get_calculator_sum(
         if answer is None:
             raise Refused([_missing(found) for found in missing(inputs)])
         path = request.url_for("calculator_sum", name=a_sum.name).path
-        return _answer(answer, with_query(path, query_of(basis, inputs)))
+        return _answer(answer, with_query(path, query_of(a_sum, basis, inputs)))
 
 
 def not_served(error: NotServed) -> dict[str, str]:
@@ -146,6 +150,7 @@ def _sum(found: Sum) -> CalculatorSum:
         inputs=[_input(each) for each in found.inputs],
         results=list(found.results),
         processes=list(found.served),
+        option=found.option.key if found.option else None,
         sources=list(found.sources),
         limits=list(found.limits),
         cautions=list(found.cautions),
@@ -177,10 +182,11 @@ def _answer(answer: Worked, link: str) -> CalculatorAnswer:
         process=basis.process.name,
         metal=basis.metal.symbol,
         electrons=basis.metal.electrons,
+        choice=basis.choice,
         inputs=[_put_in(put) for put in answer.inputs],
         results=[_result(result, first, labels) for result in answer.results],
         remarks=[CalculatorRemark(kind=r.kind, text=told(r.said)) for r in answer.remarks],
-        sources=list(answer.sum.sources),
+        sources=list(answer.sources),
         limits=list(answer.sum.limits),
         cautions=list(answer.sum.cautions),
         link=link,

@@ -26,6 +26,7 @@ SUM_EXAMPLE: JsonDict = {
     "inputs": [INPUT_EXAMPLE],
     "results": ["made_kg", "theoretical_kg", "cell_kah", "acid_kg"],
     "processes": [],
+    "option": None,
     "sources": ["M. Faraday, Phil. Trans. R. Soc. 124 (1834) 77: m = Q M / (z F)"],
     "limits": [],
     "cautions": [],
@@ -68,6 +69,8 @@ class CalculatorSum(Answer):
     """Keys of what it can give; the first is the one that was asked for."""
     processes: list[str]
     """The processes it has a model for; empty where that is all of them."""
+    option: str | None
+    """Parameter that chooses from a few, such as the kind of anodes."""
     sources: list[str]
     limits: list[str]
     """What the formula leaves out."""
@@ -150,6 +153,7 @@ class CalculatorAnswer(Answer):
                 "process": "copper electrowinning",
                 "metal": "Cu",
                 "electrons": 2,
+                "choice": "",
                 "inputs": [
                     {
                         "key": "current_ka",
@@ -193,6 +197,8 @@ class CalculatorAnswer(Answer):
     process: str
     metal: str
     electrons: int
+    choice: str
+    """What was chosen of the sum's option; empty where it has none."""
     inputs: list[CalculatorPutIn]
     results: list[CalculatorResult]
     remarks: list[CalculatorRemark]

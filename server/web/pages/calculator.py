@@ -7,7 +7,7 @@ from fastapi import APIRouter, Request
 from fastapi.responses import HTMLResponse, RedirectResponse
 from starlette.responses import Response
 
-from server.calculator.basis import BASIS_KEYS, chosen_basis
+from server.calculator.basis import BASIS_KEYS, basis_keys, chosen_basis
 from server.calculator.inputs import InputsWrong
 from server.calculator.sum import Basis, NotServed, Sum
 from server.calculator.sums import SUMS, sum_named
@@ -58,7 +58,7 @@ def calculator_sum(
         asked, faults = dict(request.query_params), _by_key(error)
     if CHOICE in asked:
         return RedirectResponse(with_query(path, _chosen(asked)), 303)
-    typed = {key: text for key, text in asked.items() if key not in BASIS_KEYS}
+    typed = {key: text for key, text in asked.items() if key not in basis_keys(a_sum)}
     try:
         basis = chosen_basis(db, house, a_sum, asked, now_ms)
     except InputsWrong as error:
@@ -75,11 +75,11 @@ def calculator_sum(
     except NotServed as error:
         not_served = error
     if not faults:
-        wanted = query_of(basis, inputs)
+        wanted = query_of(a_sum, basis, inputs)
         if asked and asked != wanted:
             return RedirectResponse(with_query(path, wanted), 303)
     with speaking(zone=house.time_zone):
-        view = _view(a_sum, house, basis, inputs, typed, faults)
+        view = _view(a_sum, house, basis, inputs, answer, typed, faults)
         view["answer"] = answer_of(answer) if answer else None
         view["served"] = [process_words(each) for each in not_served.served] if not_served else []
     return page(request, "calculator_sum.html", view, status_code=422 if faults else 200)
@@ -90,12 +90,15 @@ def _view(
     house: House,
     basis: Basis,
     inputs: Sequence[PutIn],
+    answer: Worked | None,
     typed: Mapping[str, str],
     faults: Mapping[str, str],
 ) -> dict[str, object]:
     fields = fields_of(inputs, typed, faults)
     own = {key for field in fields for key in (field.key, field.u_key)}
-    query = query_of(basis, inputs)
+    if a_sum.option and a_sum.option.choices(basis.process):
+        own.add(a_sum.option.key)
+    query = query_of(a_sum, basis, inputs)
     kept = {key: value for key, value in query.items() if key not in BASIS_KEYS}
     return {
         "sum": a_sum,
@@ -107,14 +110,30 @@ def _view(
         "choices": _choices(house, basis),
         "hidden": basis_query(basis),
         "kept": kept,
+        "option": _option(a_sum, basis),
         "fields": fields,
+        "faults": faults,
         "general_faults": [words for key, words in faults.items() if key not in own],
         "missing": [] if faults else [_(each.label) for each in missing(inputs)],
         "query": query,
         "link": with_query("", query),
         "sums": _sums(a_sum.name, basis_query(basis)),
+        "sources": answer.sources if answer else a_sum.sources,
         "limits": [_(text) for text in a_sum.limits],
         "cautions": [_(text) for text in a_sum.cautions],
+    }
+
+
+def _option(a_sum: Sum, basis: Basis) -> dict[str, object] | None:
+    """The sum's option with its choices for this process; None where there is none."""
+    choices = a_sum.option.choices(basis.process) if a_sum.option else {}
+    if a_sum.option is None or not choices:
+        return None
+    return {
+        "key": a_sum.option.key,
+        "label": _(a_sum.option.label),
+        "choices": [(value, _(words)) for value, words in choices.items()],
+        "chosen": basis.choice,
     }
 
 

@@ -15,6 +15,9 @@ from server.web.sum_words import decimals_of, figures, told, unbroken
 
 _INDEX = re.compile(r"_(\w+)")
 
+_DIGITS, _ROUGH_DIGITS = 6, 3
+"""Of a result without a doubt that is exact, and of one whose doubt was not worked out."""
+
 LEAST_SHARE = 0.005
 """Share of the variance below which an input is not worth a line."""
 SMALL_SHARE = 0.1
@@ -148,7 +151,7 @@ def _origin(put: PutIn) -> str:
 
 def _figure(result: Result, first: Result) -> Figure:
     output, u = result.output, result.u
-    decimals = decimals_of(result.value, u)
+    decimals = decimals_of(result.value, u, _DIGITS if output.has_doubt else _ROUGH_DIGITS)
     has_doubt = isfinite(u) and u > 0
     is_part = output.place == "part" and isfinite(first.value) and first.value != 0
     whole = number(result.value, decimals_of(result.value, 0.0), result.unit)

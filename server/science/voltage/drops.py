@@ -5,11 +5,12 @@ from numpy.typing import ArrayLike
 
 from server.science.arrays import Numbers, above_zero, finite, not_negative
 
-# International Annealed Copper Standard, IEC 60028: 1/58 ohm mm2/m at 20 degC (from memory).
+# International Annealed Copper Standard: 58 m/(ohm mm2) at 20 degC, looked up in a table of the
+# Industrial Power Engineering and Applications Handbook, p. 970.
 ANNEALED_COPPER_OHM_M = 1.0 / 58.0e6
-# The same standard: temperature coefficient of the resistance at 20 degC (from memory).
+# The same table: temperature coefficient of the resistance at 20 degC.
 ANNEALED_COPPER_PER_K = 0.00393
-# The same standard: the temperature to which both belong, 20 degC.
+# The same table: the temperature to which both belong, 20 degC.
 ANNEALED_COPPER_K = 293.15
 
 
@@ -132,7 +133,8 @@ def bar_drop_v(
 
     Source
     ------
-    IEC 60028 (International Annealed Copper Standard), from memory.
+    International Annealed Copper Standard, as in the Industrial Power Engineering and Applications
+    Handbook, p. 970; the straight line: J. H. Dellinger, Bull. Bur. Stand. 7 (1911) 71.
 
     Example
     -------

@@ -13,7 +13,7 @@ from server.science.processes import Process
 from server.science.uncertainty.propagation import combined
 from server.science.voltage.doubt import MEASURED, doubt_parts
 from server.science.voltage.models import CellModel
-from server.science.voltage.sensitivity import sensitivities
+from server.science.voltage.sensitivity import current_slopes
 from server.science.voltage.terms import cell_terms
 
 
@@ -95,8 +95,7 @@ def differential_resistance(
 
     def worked_out(tried: CellModel, given: Mapping[str, ArrayLike], factor: ArrayLike) -> Numbers:
         amps_m2, kelvin, metal, acid, gap = (given[name] for name in MEASURED)
-        found = sensitivities(tried, amps_m2, kelvin, metal, acid, gap, conductivity)
-        slope = found.current_density_ohm_m2
+        slope = current_slopes(tried, amps_m2, kelvin, metal, acid, gap, conductivity)
         # A factor on the conductivity divides the electrolyte's part, its bag or diaphragm apart.
         bath = slope.electrolyte - tried.separator_ohm_m2.value
         return np.asarray(slope.total + bath * (1.0 / np.asarray(factor) - 1.0))
@@ -160,11 +159,11 @@ def resistive_share(
     -------
     >>> from server.science.voltage.cells import cell_model
     >>> copper = cell_model("copper electrorefining")
-    >>> f"{resistive_share(copper, 250.0, 333.15, 45.0, 180.0, 0.030):.2f}"
-    '0.85'
+    >>> f"{resistive_share(copper, 250.0, 333.15, 45.0, 180.0, 0.035):.2f}"
+    '0.86'
     """
     conditions = current_density_a_m2, temperature_k, metal_g_l, acid_g_l, gap_m
-    slope = sensitivities(model, *conditions, conductivity).current_density_ohm_m2.total
+    slope = current_slopes(model, *conditions, conductivity).total
     volts = cell_terms(model, *conditions, conductivity).total_v
     return np.asarray(slope * finite("current_density_a_m2", current_density_a_m2) / volts)
 
@@ -222,7 +221,8 @@ def shrunk_resistance(
     # Shares rather than inverse squares, which a resistance of a microohm would make enormous.
     share = np.where(silent, 0.0, prior_u**2 / (prior_u**2 + np.where(silent, 1.0, own_u) ** 2))
     blended = prior + share * (np.where(silent, prior, own) - prior)
-    return Resistance(np.asarray(blended), np.asarray(prior_u * np.sqrt(1.0 - share)))
+    both_u = prior_u * np.where(silent, 1.0, own_u / np.hypot(own_u, prior_u))
+    return Resistance(np.asarray(blended), np.asarray(both_u))
 
 
 def typical_resistance(process: Process, volts: ArrayLike, amps: ArrayLike) -> Resistance:

@@ -111,7 +111,9 @@ def resistance_from_rounds(
     off_a = np.where(there, current - mean_a, 0.0)
     squares = (off_a**2).sum(axis=0)
     furthest = (off_a**2).max(axis=0, initial=0.0)
-    steady = np.sqrt(np.maximum(squares - furthest, 0.0) / counted)
+    # Without the furthest round the mean moves too, which takes n / (n - 1) of its square.
+    others = np.maximum(count - 1, 1)
+    steady = np.sqrt(np.maximum(squares - furthest * count / others, 0.0) / others)
     spread = np.divide(steady, mean_a, out=np.zeros_like(steady), where=mean_a > 0.0)
     reason = np.where(spread < least_spread, TOO_STEADY_A_CURRENT, "")
     reason = np.where(count < least_rounds, TOO_FEW_ROUNDS, reason)

@@ -164,7 +164,8 @@ def cell_terms(
 ) -> VoltageTerms:
     """Terms of the voltage of a cell under current.
 
-    Reversible: Nernst's equation at the cell's temperature with activities at 25 degC. Anode and
+    Reversible: Nernst's equation at the cell's temperature; activities in proportion to
+    concentrations, with the coefficients of the model's usual solution at 25 degC. Anode and
     cathode: the model's curves. Electrolyte: gap over conductivity, with the model's gas and, where
     it has one, its bag or diaphragm. Contacts and bars: the model's resistance. The anode is taken
     to be as large as the cathode. Most values of the models are from memory, see their status;
@@ -305,15 +306,20 @@ def _reversible_v(
     temperature_k: ArrayLike,
     table: PotentialTable,
 ) -> Numbers:
-    """Reversible voltage at the activities of the solution."""
-    known = process(model.process)
+    """Reversible voltage at the activities of the solution.
+
+    The coefficients are those of the usual solution: in a mixture they hang on all that is
+    dissolved, and taking them at each substance's own molality would have the voltage rise with
+    the metal.
+    """
+    known, usual = process(model.process), model.usual
     # The molar mass of the metal itself, with the coefficients of the sulfate that stands in.
     stand_in = replace(known.metal, symbol=model.activities_of)
-    activities = sulfate_activities(stand_in, metal_g_l, acid_g_l, model.water_kg_m3)
+    activities = sulfate_activities(stand_in, usual.metal_g_l, usual.acid_g_l, model.water_kg_m3)
     volts = reversible_volts(
         known,
-        activities.metal,
-        activities.acid,
+        activities.metal * above_zero("metal_g_l", metal_g_l) / usual.metal_g_l,
+        activities.acid * above_zero("acid_g_l", acid_g_l) / usual.acid_g_l,
         temperature_k,
         table=table,
         standard_at_temperature=True,

@@ -155,7 +155,7 @@ def _put_in(
     typed: Mapping[str, str],
     faults: list[InputFault],
 ) -> PutIn:
-    unit = found.unit.replace("¤", basis.currency or N_("money"))
+    unit = found.unit.replace("¤", basis.currency)
     filled = own.get(found.key) or basis.filled.get(found.key)
     text = typed.get(found.key, "").strip()
     value, origin = (filled.value, filled.origin) if filled else (None, None)
@@ -216,7 +216,7 @@ def _result(
     }
     return Result(
         output=output,
-        unit=output.unit.replace("¤", basis.currency or N_("money")),
+        unit=output.unit.replace("¤", basis.currency),
         value=budget.value,
         u=budget.standard_uncertainty,
         shares=dict(sorted(shares.items(), key=lambda pair: -pair[1])),

@@ -22,9 +22,11 @@ from server.science.voltage.overpotentials import (
     stated_between,
 )
 
-# Ours: no source at hand gives how an overpotential moves with temperature. Activation energies
-# of 20 to 60 kJ/mol would let it change by up to 0.35 % per kelvin either way.
-UNMOVED_BY_HEAT = StatedValue(0.0, 0.002, "chosen", "no source; zero, with a wide doubt")
+# Ours: no source at hand gives how an overpotential moves with temperature. On the lines below,
+# activation energies of 20 to 60 kJ/mol let it change by +0.1 to -0.2 % per kelvin.
+LINE_UNMOVED_BY_HEAT = StatedValue(0.0, 0.002, "chosen", "no source; zero, with a wide doubt")
+# Ours: near equilibrium the same energies let it fall by 2 % per kelvin and more.
+CURVE_UNMOVED_BY_HEAT = StatedValue(0.0, 0.02, "chosen", "no source; zero, with a wide doubt")
 # Nothing lies in the gap.
 NO_SEPARATOR = StatedValue(0.0, 0.0, "common practice", "no bag or diaphragm")
 # Ours: a rate constant is held so loosely that transfer coefficients may be a tenth off.
@@ -51,7 +53,7 @@ def _line(
     status: Status = "looked up" if slope.status == "looked up" else "from memory"
     return TafelElectrode(
         name,
-        UsualPoint(amps_m2, kelvin, cost, UNMOVED_BY_HEAT),
+        UsualPoint(amps_m2, kelvin, cost, LINE_UNMOVED_BY_HEAT),
         stated_between(slope.low_v, slope.high_v, status, slope.source),
     )
 
@@ -70,7 +72,7 @@ def _curve(
         StatedValue(known, known * TRANSFER_U_SHARE, "from memory", kinetics.source)
         for known in (reversed(coefficients) if anodic else coefficients)
     )
-    point = UsualPoint(amps_m2, kelvin, cost, UNMOVED_BY_HEAT)
+    point = UsualPoint(amps_m2, kelvin, cost, CURVE_UNMOVED_BY_HEAT)
     return TwoWayElectrode(name, point, driven, reverse)
 
 

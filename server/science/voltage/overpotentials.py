@@ -64,8 +64,9 @@ def stated_between(low: float, high: float, status: Status, source: str) -> Stat
 class UsualPoint:
     """Where on its curve an electrode's cost is known, and how the cost moves with temperature.
 
-    `per_kelvin` is a share of the cost. Hardly any source gives it, nor an activation energy; at
-    zero the exchange current rises with temperature by just so much that the cost here stays.
+    `per_kelvin` is a share of the cost, compounded like interest. Hardly any source gives it, nor
+    an activation energy; at zero the exchange current rises with temperature by just so much that
+    the cost here stays.
     """
 
     current_density_a_m2: float
@@ -76,8 +77,7 @@ class UsualPoint:
     def at_temperature_v(self, temperature_k: ArrayLike) -> Numbers:
         """Give the cost at the point's current density and another temperature."""
         warmer_k = above_zero("temperature_k", temperature_k) - self.temperature_k
-        cost_v = self.overpotential_v.value * (1.0 + self.per_kelvin.value * warmer_k)
-        return above_zero("overpotential_v", cost_v)
+        return np.asarray(self.overpotential_v.value * np.exp(self.per_kelvin.value * warmer_k))
 
 
 @dataclass(frozen=True)

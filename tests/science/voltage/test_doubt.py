@@ -80,6 +80,16 @@ def test_a_value_that_the_plant_measured_is_surer():
     assert after.total_standard_uncertainty_v < before.total_standard_uncertainty_v
 
 
+def test_far_from_usual_temperatures_the_electrodes_are_less_sure():
+    usual, far = cell_terms_with_doubt(
+        COPPER, 300.0, [318.15, 333.15], *AT[2:]
+    ).standard_uncertainties.cathode_v
+
+    # Fifteen kelvin at 2 % of 65 mV, beside the doubt of the band: 19.5 and 20.2 mV.
+    assert usual == pytest.approx(0.0202, abs=0.0001)
+    assert far == pytest.approx(math.hypot(0.0195, 0.0202), abs=0.001)
+
+
 @pytest.mark.parametrize("model", CELL_MODELS.values(), ids=CELL_MODELS)
 def test_the_parts_make_the_whole(model):
     at = model.usual

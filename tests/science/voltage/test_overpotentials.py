@@ -80,8 +80,8 @@ def test_a_stated_change_with_temperature_counts_by_the_kelvin():
     point = UsualPoint(300.0, 318.15, stated(0.6), stated(-0.004))
     electrode = TafelElectrode("oxygen", point, stated(0.1))
 
-    # 10 K warmer at -0.4 % of 0.6 V per kelvin.
-    assert electrode.overpotential_v(300.0, 328.15) == pytest.approx(0.6 - 0.024)
+    # 10 K warmer at -0.4 % per kelvin: 0.6 exp(-0.04).
+    assert electrode.overpotential_v(300.0, 328.15) == pytest.approx(0.576474, abs=1e-6)
 
 
 def test_a_limit_of_supply_costs_more():

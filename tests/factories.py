@@ -16,6 +16,7 @@ from server.jobs import catch_up
 from server.settings import Settings
 from server.storage import readings, samples
 from server.storage.deliveries import Delivery, HeldRow, Suspicion
+from server.storage.flag_acts import FlagAct
 from server.storage.flags import Flag
 from server.storage.people import Person, Token
 from server.storage.plant import (
@@ -340,6 +341,25 @@ def make_flag(session: Session, section_id: int, cell_id: int, **given: Any) -> 
     session.add(flag)
     session.commit()
     return flag
+
+
+def make_flag_act(session: Session, flag: Flag, act: str, **given: Any) -> FlagAct:
+    """Somebody did something about a flag, an hour after it was raised."""
+    row = FlagAct(
+        **{
+            "cell_id": flag.cell_id,
+            "kind": flag.kind,
+            "raised_ms": flag.raised_ms,
+            "at_ms": flag.raised_ms + HOUR_MS,
+            "who": "tomas",
+            "act": act,
+            "reason": "",
+        }
+        | given
+    )
+    session.add(row)
+    session.commit()
+    return row
 
 
 def make_person(session: Session, **given: Any) -> Person:

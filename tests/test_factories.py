@@ -35,7 +35,7 @@ def test_every_record_can_be_made_without_saying_more(session):
     make.make_find(session, section.id, cell)
     make.make_held_row(session)
     make.make_suspicion(session, section.id, cell)
-    make.make_flag(session, section.id, cell)
+    make.make_flag_act(session, make.make_flag(session, section.id, cell), "seen")
     make.make_person(session)
     make.make_token(session, "0" * 64)
 

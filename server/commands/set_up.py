@@ -7,6 +7,7 @@ import typer
 
 from server import clock
 from server.accounts.soundness import unsound
+from server.clock import as_datetime
 from server.commands import figures
 from server.commands.terminal import (
     FAILED,
@@ -27,6 +28,7 @@ from server.storage.condition import newest_revision, readiness
 from server.storage.current import bypasses_of
 from server.storage.database import Database
 from server.storage.derived_rows import orphaned_readings
+from server.storage.flag_acts import acts_without_flag
 from server.storage.plant import has_plant, house
 
 
@@ -78,6 +80,8 @@ def check() -> None:
             )
         else:
             faults += _unsound(database)
+            for lone in _acts_without_flag(database):
+                said.print(lone, markup=False)
         if faults:
             for fault in faults:
                 complained.print(f"ampledger: {fault}", markup=False)
@@ -111,6 +115,21 @@ def _unsound(database: Database) -> list[str]:
                     )
                 progress(number + 1, len(plant.sections))
         return faults
+
+
+def _acts_without_flag(database: Database) -> list[str]:
+    """What people did about flags that the watch no longer raises: kept, and told."""
+    with database.read() as session:
+        if not has_plant(session):
+            return []
+        plant = house(session)
+        owner = {cell_id: section for section in plant.sections for cell_id in section.cell_ids}
+        return [
+            f"{owner[cell_id].name}, cell {owner[cell_id].number_of(cell_id)}: the flag"
+            f" “{kind}” of {as_datetime(raised_ms, plant.time_zone):%Y-%m-%d %H:%M} is raised no"
+            f" more; what people did about it is kept ({count})"
+            for (cell_id, kind, raised_ms), count in acts_without_flag(session)
+        ]
 
 
 def recompute() -> None:

@@ -1,7 +1,16 @@
 """Every table in one place, for migrations and tests to compare with."""
 
-from server.storage import deliveries, derived, flags, people, plant, readings, records
+from server.storage import (
+    deliveries,
+    derived,
+    flag_acts,
+    flags,
+    people,
+    plant,
+    readings,
+    records,
+)
 from server.storage.base import Base
 
 METADATA = Base.metadata
-MODULES = (deliveries, derived, flags, people, plant, readings, records)
+MODULES = (deliveries, derived, flag_acts, flags, people, plant, readings, records)

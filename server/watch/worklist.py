@@ -7,6 +7,8 @@ from sqlalchemy.orm import Session
 from server.storage.plant import House
 from server.storage.walk import walking_order
 from server.watch.flags import FlagResult, flags_between
+from server.watch.life import FlagLife
+from server.watch.lives import lives
 
 _TIERS = ("act", "look")
 
@@ -16,29 +18,40 @@ class WorkItem:
     """One open flag on the list."""
 
     flag: FlagResult
+    life: FlagLife
     rank: int
     walk: int
     """Place on the walk through its section, from 1; 0 for a cell that is there no more."""
 
 
 def worklist(session: Session, house: House, at_ms: int) -> list[WorkItem]:
-    """Flags that were open at a moment, in the order in which to see to them."""
+    """Flags that were open at a moment, in the order in which to see to them.
+
+    Left out are those that a find or a person has closed, until they come back.
+    """
     flags = [
         flag
         for flag in flags_between(session, house, at_ms, at_ms + 1)
         if flag.ended_ms is None or flag.ended_ms > at_ms
     ]
-    flags.sort(
-        key=lambda f: (_TIERS.index(f.tier), -(f.lost_value_per_day or 0.0), f.raised_ms, f.cell)
-    )
+    listed = [
+        (flag, life)
+        for flag, life in zip(flags, lives(session, house, flags, at_ms), strict=True)
+        if life.state != "ended"
+    ]
+    listed.sort(key=lambda pair: _order(pair[0]))
     places = {
         name: {cell: place for place, cell in enumerate(_walk(house, name, at_ms), start=1)}
-        for name in {flag.section for flag in flags}
+        for name in {flag.section for flag, _ in listed}
     }
     return [
-        WorkItem(flag, rank, places[flag.section].get(flag.cell, 0))
-        for rank, flag in enumerate(flags, start=1)
+        WorkItem(flag, life, rank, places[flag.section].get(flag.cell, 0))
+        for rank, (flag, life) in enumerate(listed, start=1)
     ]
+
+
+def _order(flag: FlagResult) -> tuple[int, float, int, int]:
+    return _TIERS.index(flag.tier), -(flag.lost_value_per_day or 0.0), flag.raised_ms, flag.cell
 
 
 def _walk(house: House, section_name: str, at_ms: int) -> tuple[int, ...]:

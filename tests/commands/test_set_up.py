@@ -108,6 +108,27 @@ def test_check_finds_readings_that_belong_to_nothing(filled, damage, words):
     assert words in filled.complained
 
 
+def test_check_tells_of_acts_whose_flag_is_raised_no_more(filled):
+    from server.storage.database import Database
+    from server.storage.direct import execute
+
+    database = Database(filled.url)
+    with database.write() as session:
+        execute(
+            session,
+            "INSERT INTO flag_act (id, cell_id, kind, raised_ms, at_ms, who, act, reason)"
+            " VALUES (1, 2, 'short', 1709532000000, 1709535600000, 'ana', 'seen', '')",
+        )
+    database.close()
+
+    assert filled.run("check") == 0
+    said = " ".join(filled.said.split())
+    assert "EW1, cell 2: the flag “short” of 2024-03-04" in said
+    assert "what people did about it is kept (1)" in said
+    assert filled.run("recompute") == 0
+    assert filled.rows("SELECT who, act FROM flag_act") == [("ana", "seen")]
+
+
 def test_recompute_makes_the_same_figures_again(filled):
     tables = {
         "charge_day": "section_id, day_ms",

@@ -2,6 +2,7 @@
 
     make bench                          all of it, about a quarter of an hour
     python -m tests.bench --small       the same on a plant of a few cells, to see that it runs
+    python -m tests.bench --arrays      the arithmetic on arrays alone, in seconds
 
 Ratios are of one run on one machine and can be compared between machines; times cannot.
 """
@@ -16,6 +17,7 @@ from rich.console import Console
 from rich.table import Table
 
 from server import clock
+from tests.bench.arrays import charts_against_a_pass
 from tests.bench.intake import import_against_bare
 from tests.bench.measure import quantile
 from tests.bench.plant import DAY_S, Plant
@@ -49,6 +51,7 @@ class Sizes:
     small: Plant
     runs: int
     times: int
+    array_runs: int
 
 
 def sizes(is_small: bool) -> Sizes:
@@ -56,7 +59,7 @@ def sizes(is_small: bool) -> Sizes:
     end_s = clock.now_ms() // 1000 // DAY_S * DAY_S
     if is_small:
         return Sizes(
-            Plant(2, 20, 10, end_s), Plant(2, 20, 100, end_s), Plant(2, 20, 10, end_s), 1, 5
+            Plant(2, 20, 10, end_s), Plant(2, 20, 100, end_s), Plant(2, 20, 10, end_s), 1, 5, 3
         )
     return Sizes(
         imported=Plant(10, 100, 367, end_s),
@@ -64,11 +67,23 @@ def sizes(is_small: bool) -> Sizes:
         small=Plant(10, 150, 183, end_s),
         runs=5,
         times=100,
+        array_runs=31,
     )
+
+
+def array_results(runs: int) -> list[Result]:
+    """Measure what works on arrays in memory."""
+    console.print(f"Working out the charts of a house over five years, {runs} times ...")
+    ratio, charts_s, pass_s = charts_against_a_pass(runs)
+    console.print(f"  {charts_s * 1000:.0f} ms, one pass of NumPy {pass_s * 1000:.1f} ms")
+    gaps, _, _ = charts_against_a_pass(runs, missing=0.005)
+    console.print(f"  with one reading in 200 missing {gaps:.1f} passes")
+    return [Result("residual, CUSUM and EWMA against one pass of NumPy", ratio, 5.0)]
 
 
 def results(of: Sizes, folder: Path) -> list[Result]:
     """Measure everything."""
+    arrays = array_results(of.array_runs)
     console.print(f"Importing {of.imported.readings:,} readings, {of.runs} times ...")
     ratio, import_s, bare_s = import_against_bare(folder, of.imported, of.runs)
     console.print(f"  {import_s:.1f} s, the bare driver {bare_s:.1f} s")
@@ -85,6 +100,7 @@ def results(of: Sizes, folder: Path) -> list[Result]:
     slowest = max(p95, key=p95.__getitem__)
     worst = min(found.follows, key=found.follows.__getitem__)
     return [
+        *arrays,
         Result("import against the bare driver, rate", ratio, 0.30, at_least=True),
         Result("one round of 60, acknowledged, p99", quantile(found.rounds, 0.99), 50, "ms"),
         Result("accounts over a year, p95", quantile(found.accounts, 0.95), 50, "ms"),
@@ -98,9 +114,14 @@ def main() -> int:
     """Measure and print; answers 1 where a limit is missed on the full plant."""
     parser = argparse.ArgumentParser(prog="python -m tests.bench")
     parser.add_argument("--small", action="store_true", help="a few cells, to see that it runs")
-    is_small = parser.parse_args().small
-    with tempfile.TemporaryDirectory(prefix="ampledger-bench-") as folder:
-        found = results(sizes(is_small), Path(folder))
+    parser.add_argument("--arrays", action="store_true", help="the arithmetic on arrays alone")
+    asked = parser.parse_args()
+    is_small = asked.small
+    if asked.arrays:
+        found = array_results(sizes(is_small).array_runs)
+    else:
+        with tempfile.TemporaryDirectory(prefix="ampledger-bench-") as folder:
+            found = results(sizes(is_small), Path(folder))
     table = Table("what", "found", "wanted", "", title="Ampledger, measured")
     for result in found:
         bound = "at least" if result.at_least else "at most"

@@ -1,7 +1,7 @@
 """D. M. Hawkins, J. Quality Technology 25 (1993) 248, in Montgomery, ISQC, table 9.4: limits.
 
 Pairs of k and h for a two-sided run length of about 370. Looked up: in a public teaching script
-that lists them; the article from memory. Three limits for about 1730 readings, one-sided, of C. Zou,
+that lists them; the article from memory. Three limits for about 1730 readings, one-sided: C. Zou,
 Y. Liu and Z. Wang, Metrika 70 (2009) 141, table 1: looked up, as quoted in the manual of the R
 package spc (xDcusum.arl).
 """

@@ -53,10 +53,15 @@ def span_of(from_text: str, to_text: str, house: House) -> tuple[int, int]:
     """
     from_ms = moment_of(from_text, house, "query.from")
     to_ms = moment_of(to_text, house, "query.to")
+    span_checked(from_ms, to_ms, to_text)
+    return from_ms, to_ms
+
+
+def span_checked(from_ms: int, to_ms: int, to_text: str) -> None:
+    """Refuse a stretch of time that ends before it begins, or is longer than a century."""
     if to_ms <= from_ms:
         what = _("The time ends before it begins.")
         raise Refused([fault("query.to", what, to_text, _("a moment after `from`"))])
     if to_ms - from_ms > _LONGEST_MS:
         what = _("The time is longer than a century.")
         raise Refused([fault("query.to", what, to_text, _("at most a century after `from`"))])
-    return from_ms, to_ms

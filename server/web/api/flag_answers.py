@@ -4,22 +4,23 @@ from typing import Any
 
 from server.science.units import ka_from_amps, millivolts_from_volts
 from server.watch.flags import FlagResult
+from server.watch.life import FlagLife
 from server.watch.worklist import WorkItem
 from server.web.api.account_answers import known
-from server.web.api.schemas import FlagAnswer, WorkItemAnswer
+from server.web.api.schemas_flags import FlagAnswer, WorkItemAnswer
 
 
-def flag_answer(flag: FlagResult) -> FlagAnswer:
+def flag_answer(flag: FlagResult, life: FlagLife) -> FlagAnswer:
     """A flag as the API answers it."""
-    return FlagAnswer(**_fields(flag))
+    return FlagAnswer(**_fields(flag, life))
 
 
 def work_item_answer(item: WorkItem) -> WorkItemAnswer:
     """An item of the work list as the API answers it."""
-    return WorkItemAnswer(**_fields(item.flag), rank=item.rank, walk=item.walk)
+    return WorkItemAnswer(**_fields(item.flag, item.life), rank=item.rank, walk=item.walk)
 
 
-def _fields(flag: FlagResult) -> dict[str, Any]:
+def _fields(flag: FlagResult, life: FlagLife) -> dict[str, Any]:
     return {
         "section": flag.section,
         "cell": flag.cell,
@@ -36,4 +37,10 @@ def _fields(flag: FlagResult) -> dict[str, Any]:
         "lost_kg_per_day": flag.lost_kg_per_day,
         "lost_value_per_day": flag.lost_value_per_day,
         "evidence": flag.evidence,
+        "state": life.state,
+        "shelved_until": life.shelved_until_ms,
+        "seen_by": life.seen_by,
+        "assigned_to": life.assigned_to,
+        "ended_by": life.ended_by,
+        "verdict": life.verdict,
     }

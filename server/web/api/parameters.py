@@ -27,6 +27,14 @@ ToTime = Annotated[
         },
     ),
 ]
+FromIfAny = Annotated[
+    str | None,
+    Query(alias="from", max_length=40, description=f"From when; where left out, a month. {_TIME}"),
+]
+ToIfAny = Annotated[
+    str | None,
+    Query(alias="to", max_length=40, description=f"Until when; now where it is left out. {_TIME}"),
+]
 AtTime = Annotated[
     str | None,
     Query(max_length=40, description=f"At which moment; now where it is left out. {_TIME}"),

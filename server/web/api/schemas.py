@@ -3,35 +3,14 @@
 from typing import Literal
 
 from pydantic import BaseModel, ConfigDict, Field
-from pydantic.config import JsonDict
 
 from server.web.api.times import Moment
 
 Status = Literal["stored", "duplicate", "held", "suspect"]
-Tier = Literal["look", "act"]
 SheetName = Literal[
     "readings", "volts", "current", "counter", "lots", "outages", "electrolyte", "finds"
 ]
 """`readings` and `volts` are the same sheet: the call's name and the file's."""
-
-
-FLAG_EXAMPLE: JsonDict = {
-    "section": "A",
-    "cell": 7,
-    "kind": "drift low",
-    "tier": "act",
-    "raised_at": "2026-03-01T02:10:00Z",
-    "ended_at": None,
-    "raised_by": "2026-03-01T02:10:00Z",
-    "volts": 1.87,
-    "expected_volts": 2.03,
-    "deviation_mv": -160.0,
-    "short_ka": 0.9,
-    "u_short_ka": 0.2,
-    "lost_kg_per_day": 24.0,
-    "lost_value_per_day": 204.0,
-    "evidence": "1.870 V, below the 1.95 V that the section's cells should show.",
-}
 
 
 class Answer(BaseModel):
@@ -140,57 +119,6 @@ class ReadingSeries(Answer):
     volts: list[float]
     suspect: list[bool]
     """Whether the reading is doubted, and so left out of the figures."""
-
-
-class FlagAnswer(Answer):
-    """What the watch says of a cell."""
-
-    model_config = ConfigDict(json_schema_extra={"example": FLAG_EXAMPLE})
-
-    section: str
-    cell: int
-    kind: str
-    """short, drift high, drift low, suspect reading or no reading."""
-    tier: str
-    """look: watched; act: sure enough to send someone."""
-    raised_at: Moment
-    ended_at: Moment | None
-    """Null while it is open."""
-    raised_by: Moment
-    """Time of the reading that raised it."""
-    volts: float | None
-    expected_volts: float | None
-    deviation_mv: float | None
-    short_ka: float | None
-    u_short_ka: float | None
-    lost_kg_per_day: float | None
-    lost_value_per_day: float | None
-    """In the tankhouse's currency."""
-    evidence: str
-    """One sentence that a person can read."""
-
-
-class Flags(Answer):
-    """Every flag whose life touches the time asked for."""
-
-    flags: list[FlagAnswer]
-
-
-class WorkItemAnswer(FlagAnswer):
-    """An open flag with its place on the list and on the walk."""
-
-    model_config = ConfigDict(json_schema_extra={"example": {**FLAG_EXAMPLE, "rank": 1, "walk": 7}})
-
-    rank: int
-    """1 is what to do first."""
-    walk: int
-    """Place along the walk through the section."""
-
-
-class Worklist(Answer):
-    """Open flags: those to act on first, the costliest first."""
-
-    items: list[WorkItemAnswer]
 
 
 class HeldAnswer(Answer):

@@ -4,7 +4,7 @@ from server.watch.worklist import worklist
 from server.web.api.flag_answers import work_item_answer
 from server.web.api.parameters import AtTime
 from server.web.api.resource import resource
-from server.web.api.schemas import Worklist
+from server.web.api.schemas_flags import Worklist
 from server.web.dependencies import DbSession, Now, ThisHouse, requires
 from server.web.moments import moment_of
 

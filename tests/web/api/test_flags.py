@@ -7,7 +7,8 @@ from tests.factories import DAY_MS, NOW_MS, make_flag, make_section
 NAMES = [
     "section", "cell", "kind", "tier", "raised_at", "ended_at", "raised_by", "volts",
     "expected_volts", "deviation_mv", "short_ka", "u_short_ka", "lost_kg_per_day",
-    "lost_value_per_day", "evidence",
+    "lost_value_per_day", "evidence", "state", "shelved_until", "seen_by", "assigned_to",
+    "ended_by", "verdict",
 ]  # fmt: skip
 WEEK = {"from": "2024-02-28", "to": "2024-03-06"}
 

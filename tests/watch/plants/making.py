@@ -75,6 +75,7 @@ def make(scenario: Scenario, seed: int) -> Plant:
         in_service=in_service,
         is_wrong=is_wrong,
         crop_of=hung.crop_of[at],
+        hung_ms=START_MS + hung.hung_step[at].astype(np.int64) * STEP_MS,
         noise_v=noise_v,
         resistance_ohm=healthy_ohm.mean(axis=0),
         short_amps=shorted.astype(np.float32),

@@ -12,6 +12,9 @@ Numbers = NDArray[np.float64]
 Moments = NDArray[np.int64]
 Truths = NDArray[np.bool_]
 
+LEAST_LOAD = 0.2
+"""Share of rated current."""
+
 
 @dataclass(frozen=True)
 class Pull:
@@ -112,6 +115,8 @@ class Plant:
     """Whether what was written is not what was read: a slipped unit, swapped digits."""
     crop_of: NDArray[np.int32]
     """Which crop of its cell was hanging, counted from 0."""
+    hung_ms: Moments
+    """Since when it hung; may be before the record."""
     noise_v: Numbers
     """Standard deviation of a reading, by cell."""
     resistance_ohm: Numbers
@@ -149,6 +154,16 @@ class Plant:
     def is_read(self) -> Truths:
         """Where a reading was written that says something: of a cell in service, rightly."""
         return np.isfinite(self.volts) & self.in_service & ~self.is_wrong
+
+    @cached_property
+    def is_loaded(self) -> Truths:
+        """Whether the section carried a current under which a voltage says something."""
+        return self.amps >= LEAST_LOAD * self.scenario.trade.rated_amps
+
+    @cached_property
+    def reading_noise_v(self) -> Numbers:
+        """Standard deviation of a written reading, by cell: what it scatters, and the rounding."""
+        return np.hypot(self.noise_v, self.scenario.pen.rounding_v / np.sqrt(12.0))
 
     @cached_property
     def has_short(self) -> Truths:

@@ -3,7 +3,7 @@
 import pytest
 
 from server.storage.flag_acts import acts_on_flags
-from tests.factories import DAY_MS, NOW_MS, make_flag, make_section
+from tests.factories import NOW_MS, make_flag, make_section
 
 ACTS = "/api/v1/flags/acts"
 MEANT = {
@@ -52,12 +52,13 @@ def test_who_acts_works_on_it_unless_somebody_else_is_named(flag, client, sessio
     assert told["assigned_to"] == told["seen_by"]
 
 
-def test_a_flag_is_shelved_for_a_time_and_comes_back(flag, client, client_of, the_time):
+def test_a_flag_is_shelved_for_a_time_and_comes_back(flag, client):
     answer = sent(client, act="shelved", until="2024-03-07T06:00:00Z", reason="pulled then")
-    the_time.now_ms = NOW_MS + 2 * DAY_MS
+    later = client.get("/api/v1/worklist", params={"at": "2024-03-07T06:00:00Z"}).json()["items"]
 
     assert answer.json()["shelved_until"] == "2024-03-07T06:00:00Z"
-    assert first_item(client_of("reader"))["state"] == "raised"
+    assert first_item(client)["state"] == "shelved"
+    assert [item["state"] for item in later] == ["raised"]
 
 
 @pytest.mark.parametrize(

@@ -15,7 +15,7 @@ from server.science.energy import (
 )
 from server.storage.plant import SectionPlan
 from server.storage.readings import Series
-from server.watch.limits import Watched
+from server.watch.loaded import Loaded
 from server.watch.resistance import resistance_ohm
 
 Numbers = NDArray[np.float64]
@@ -42,7 +42,7 @@ class EnergyOfDay:
 
 def readings_under_load(
     section: SectionPlan, series: Series, record: ChargeRecord, bypasses: list[tuple[int, int, int]]
-) -> Watched:
+) -> Loaded:
     """The believed readings of cells that carried current, with the voltage at rated current.
 
     Where no current is recorded, a reading is taken as made at rated current.
@@ -55,7 +55,7 @@ def readings_under_load(
     for cell_id, start, end in bypasses:
         keep &= ~((series.cell_id == cell_id) & (series.at_ms >= start) & (series.at_ms < end))
     referred = referred_volts(series.volts, amps, rated, resistance)
-    return Watched(series.where(keep), referred[keep], amps[keep])
+    return Loaded(series.where(keep), referred[keep], amps[keep])
 
 
 def _terms_of(section: SectionPlan, at_ms: NDArray[np.int64]) -> tuple[Numbers, Numbers]:

@@ -13,14 +13,13 @@ from server.accounts.energy_days import REACH_MS, energy_of_day, readings_under_
 from server.accounts.periods import DAY_MS, utc_day_ms
 from server.accounts.summaries import periods_touching, rebuild_summaries
 from server.storage.current import bypasses_of
-from server.storage.doubts import reasons_between
-from server.storage.flag_rows import end_flag, flags_touching, replace_flags
 from server.storage.latest import keep_latest
 from server.storage.plant import House, SectionPlan
 from server.storage.readings import Series, between, cells_recorded, span_ms
 from server.storage.stale import Kind, StaleStretch, mark, pending, settle
 from server.storage.summaries import keep_energy_days
-from server.watch.limits import Watched, replay
+from server.watch.loaded import Heard, Loaded
+from server.watch.watching import rewatch
 
 _FAR_MS = 2**60
 
@@ -30,8 +29,8 @@ _AROUND_MS = 2 * REACH_MS + DAY_MS
 BLOCK_MS = 366 * DAY_MS
 """The longest stretch that is worked out in one transaction."""
 
-_ORDER: tuple[Kind, ...] = ("charge", "readings", "energy", "flags", "lots")
-"""Charge first: energy, flags and crops rest on it."""
+_ORDER: tuple[Kind, ...] = ("charge", "readings", "energy", "lots", "flags")
+"""Charge first: energy and crops rest on it, and the watch on all of them."""
 
 
 def next_block(session: Session) -> StaleStretch | None:
@@ -54,8 +53,8 @@ def bring_up_to_date(session: Session, house: House, block: StaleStretch, max_ho
         "charge": lambda: _after_charge(session, section, block, max_hold_ms),
         "readings": lambda: _after_readings(session, house, section, block),
         "energy": lambda: _after_both(session, section, block.from_ms, block.to_ms),
-        "flags": lambda: _watch_again(session, section, block.from_ms, block.to_ms),
-        "lots": lambda: replay_lots(session, section, block.from_ms),
+        "lots": lambda: _after_lots(session, section, block.from_ms),
+        "flags": lambda: _watch(session, section, block.from_ms, block.to_ms),
     }
     work[block.kind]()
     if block.kind == "lots":
@@ -69,7 +68,7 @@ class _AtHand:
     """A section's readings and current around a stretch of time."""
 
     series: Series
-    loaded: Watched
+    loaded: Loaded
     record: ChargeRecord
     bypasses: list[tuple[int, int, int]]
 
@@ -115,17 +114,24 @@ def _after_both(
     to_ms: int,
     hand: _AtHand | None = None,
 ) -> None:
-    """What current and voltages give together: energy and the watch."""
+    """What current and voltages give together: energy, and anew what the watch says."""
     if hand is None:
         hand = _at_hand(session, section, from_ms - _AROUND_MS, to_ms + _AROUND_MS)
     _energy(session, section, *_bent_days(session, section, from_ms, to_ms, hand), hand)
-    _watch(session, section, from_ms, to_ms, hand)
+    _mark_watch(session, section, from_ms)
 
 
-def _watch_again(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
-    """Replay the watch where only what was open before has changed."""
-    hand = _at_hand(session, section, from_ms - REACH_MS, to_ms + REACH_MS)
-    _watch(session, section, from_ms, to_ms, hand)
+def _after_lots(session: Session, section: SectionPlan, from_ms: int) -> None:
+    """What was pulled changed: crops, and what the watch holds against what."""
+    replay_lots(session, section, from_ms)
+    _mark_watch(session, section, from_ms)
+
+
+def _mark_watch(session: Session, section: SectionPlan, from_ms: int) -> None:
+    """The watch goes on from what it remembers, so that it is replayed to its end."""
+    span = span_ms(session, section.cell_ids)
+    if span is not None and from_ms <= span[1]:
+        mark(session, section.id, "flags", from_ms, span[1] + 1)
 
 
 def _bent_days(
@@ -187,48 +193,12 @@ def _filled(cells: NDArray[np.float64]) -> NDArray[np.float64]:
     return cells[: int(np.max(np.flatnonzero(cells[:, 0]), initial=-1)) + 1]
 
 
-def _watch(session: Session, section: SectionPlan, from_ms: int, to_ms: int, hand: _AtHand) -> None:
-    """Replay the watch over a stretch; go on later only where its outcome has changed.
-
-    What follows within a week is replayed too: a reading says whether the next one of its cell
-    is the second in a row, and what its neighbours are held against.
-    """
-    to_ms += REACH_MS
-    series = hand.series.within(from_ms - REACH_MS, to_ms)
-    watched = hand.loaded.within(from_ms - REACH_MS, to_ms)
-    doubted = series.where((series.suspect != 0) & (series.at_ms >= from_ms))
-    touching = flags_touching(session, from_ms, to_ms, section.id)
-    open_before = [f for f in touching if f.raised_ms < from_ms]
-    open_after = {
-        (f.cell_id, f.kind, f.raised_ms): f.ended_ms
-        for f in touching
-        if f.ended_ms is None or f.ended_ms >= to_ms
-    }
-    for flag in touching:
-        session.expunge(flag)
-    raised, ended = replay(
-        section,
-        watched,
-        doubted,
-        reasons_between(session, section.id, from_ms, to_ms) if len(doubted) else {},
-        open_before,
-        from_ms,
-        to_ms,
-    )
-    still_open: set[tuple[int, str, int]] = set()
-    for flag in raised:
-        if flag.ended_ms is None:
-            key = (flag.cell_id, flag.kind, flag.raised_ms)
-            still_open.add(key)
-            flag.ended_ms = open_after.get(key)
-    replace_flags(session, section.id, from_ms, to_ms, raised)
-    for flag in open_before:
-        key = (flag.cell_id, flag.kind, flag.raised_ms)
-        if key not in ended:
-            still_open.add(key)
-        new_end = ended.get(key, open_after.get(key))
-        if new_end != flag.ended_ms:
-            end_flag(session, *key, new_end)
+def _watch(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
+    """Replay the watch over the rounds of a stretch."""
     span = span_ms(session, section.cell_ids)
-    if still_open != set(open_after) and span is not None and span[1] >= to_ms:
-        mark(session, section.id, "flags", to_ms, min(to_ms + BLOCK_MS, span[1] + 1))
+
+    def hear(start_ms: int, end_ms: int) -> Heard:
+        hand = _at_hand(session, section, start_ms, end_ms)
+        return Heard(hand.loaded, hand.series.where(hand.series.suspect != 0), hand.bypasses)
+
+    rewatch(session, section, from_ms, to_ms, span[1] if span else to_ms, hear)

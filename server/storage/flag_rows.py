@@ -24,6 +24,7 @@ _COLUMNS = (
     "lost_kg_per_day",
     "lost_value_per_day",
     "evidence",
+    "probability",
 )
 
 
@@ -62,6 +63,15 @@ def replace_flags(
         session,
         f"INSERT INTO flag ({', '.join(_COLUMNS)}) VALUES ({', '.join('?' * len(_COLUMNS))})",
         [tuple(getattr(flag, name) for name in _COLUMNS) for flag in flags],
+    )
+
+
+def retier_flag(session: Session, cell_id: int, kind: str, raised_ms: int, tier: str) -> None:
+    """Write whether a flag says to look or to act."""
+    execute(
+        session,
+        "UPDATE flag SET tier = ? WHERE cell_id = ? AND kind = ? AND raised_ms = ?",
+        (tier, cell_id, kind, raised_ms),
     )
 
 

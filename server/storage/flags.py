@@ -33,3 +33,5 @@ class Flag(Base):
     lost_kg_per_day: Mapped[float | None] = mapped_column(Real)
     lost_value_per_day: Mapped[float | None] = mapped_column(Real)
     evidence: Mapped[str] = mapped_column(Words)
+    probability: Mapped[float | None] = mapped_column(Real)
+    """Of a short; None for what is no short."""

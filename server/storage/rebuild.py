@@ -16,6 +16,8 @@ _DERIVED = (
     "crop",
     "lot_figure",
     "flag",
+    "watched_round",
+    "watch_state",
     "stale",
 )
 

@@ -9,8 +9,9 @@ from server.storage import (
     plant,
     readings,
     records,
+    watch_rows,
 )
 from server.storage.base import Base
 
 METADATA = Base.metadata
-MODULES = (deliveries, derived, flag_acts, flags, people, plant, readings, records)
+MODULES = (deliveries, derived, flag_acts, flags, people, plant, readings, records, watch_rows)

@@ -1,0 +1,71 @@
+"""What the cells of a round share: a robust centre that a short, which only lowers, cannot drag."""
+
+import numpy as np
+from numpy.typing import NDArray
+
+Numbers = NDArray[np.float64]
+Truths = NDArray[np.bool_]
+
+# Fewer cells than this say nothing of what they share.
+ENOUGH = 4
+
+# Where the weight of a reading begins to fall, and below which it has none, in noises.
+_LOW_BEND, _LOW_END, _HIGH_BEND = 1.5, 3.0, 2.5
+
+# Noises by which two parts of a round must differ, over all their readings, to be kept apart.
+_BREAK = 7.0
+
+# Readings on either side of a break.
+_LEAST_PART = 5
+
+
+def centre(rest_v: Numbers, noise_v: Numbers, trust: Numbers) -> tuple[float, float]:
+    """Centre of the readings less their levels, and its variance.
+
+    `trust` is how likely each cell is healthy; those more likely not are left out while enough
+    others are there. Two steps from the median, lower readings losing weight sooner.
+    """
+    good = trust > 0.5
+    if np.count_nonzero(good) < ENOUGH:
+        good = np.ones(len(rest_v), bool)
+    rest, noise = rest_v[good], noise_v[good]
+    middle = float(np.median(rest))
+    base = trust[good] / noise**2 if trust[good].any() else 1.0 / noise**2
+    for _ in range(2):
+        z = (rest - middle) / noise
+        weight = base * np.where(
+            z < -_LOW_BEND,
+            np.where(z < -_LOW_END, 0.0, _LOW_BEND / np.maximum(-z, _LOW_BEND)),
+            _HIGH_BEND / np.maximum(z, _HIGH_BEND),
+        )
+        total = float(weight.sum())
+        if total <= 0.0:
+            break
+        middle = float((weight * rest).sum()) / total
+    total = float(base.sum()) if total <= 0.0 else total
+    return middle, 1.0 / total
+
+
+def broken(rest_v: Numbers, noise_v: Numbers) -> int:
+    """Place in the walk at which what the cells share changed; 0 where it did not.
+
+    A current that steps between two of its samples, or a meter that is exchanged, moves every
+    reading from there on. Shorts do not stand in a row of five or more.
+    """
+    count = len(rest_v)
+    if count < 2 * _LEAST_PART:
+        return 0
+    z = np.clip((rest_v - np.median(rest_v)) / noise_v, -8.0, 8.0)
+    sums = np.cumsum(z)[:-1]
+    before = np.arange(1, count)
+    after = count - before
+    step = sums / before - (sums[-1] + z[-1] - sums) / after
+    strength = np.abs(step) / np.sqrt(1.0 / before + 1.0 / after)
+    strength[: _LEAST_PART - 1] = 0.0
+    strength[count - _LEAST_PART :] = 0.0
+    place = int(np.argmax(strength))
+    if strength[place] < _BREAK or abs(step[place]) < 3.0:
+        return 0
+    first, last = rest_v[: place + 1], rest_v[place + 1 :]
+    apart = abs(float(np.median(first)) - float(np.median(last)))
+    return place + 1 if apart > 3.0 * float(np.median(noise_v)) else 0

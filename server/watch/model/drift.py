@@ -1,0 +1,47 @@
+"""Cells that leave what they used to read, slowly and for good."""
+
+import numpy as np
+from numpy.typing import NDArray
+
+from server.watch.model.facts import Facts
+from server.watch.model.state import CROP_COUNT, CROP_SUM, State
+
+Numbers = NDArray[np.float64]
+
+# Weight of the newest reading in the recent mean (Roberts 1959): it looks back about two days.
+RECENT = 0.15
+
+# The reference takes the mean of the first readings, then follows over about two months.
+_SETTLED, _FOLLOWS = 20.0, 1.0 / 180.0
+
+
+def gather(
+    state: State,
+    facts: Facts,
+    at: NDArray[np.int64],
+    above_v: Numbers,
+    healthy: Numbers,
+    noise_v: Numbers,
+) -> tuple[Numbers, Numbers]:
+    """Recent mean of each cell against its reference, and how far chance alone takes it.
+
+    A reading counts as far as the cell is healthy: what a short takes is no drift.
+    """
+    known = state.known[at]
+    limit = 4.0 * noise_v
+    new = known < 1
+    state.reference_v[at] = np.where(new, above_v, state.reference_v[at])
+    away = above_v - state.reference_v[at]
+    is_settled = known >= _SETTLED
+    clipped = np.where(
+        is_settled, np.clip(away, state.recent_v[at] - limit, state.recent_v[at] + limit), 0.0
+    )
+    recent = state.recent_v[at] + RECENT * healthy * (clipped - state.recent_v[at])
+    state.recent_v[at] = np.where(is_settled, recent, 0.0)
+    follow = np.where(is_settled, _FOLLOWS, 1.0 / (known + 1.0)) * healthy
+    state.reference_v[at] += follow * np.clip(away, -2 * limit, 2 * limit)
+    crop_var = max(state.shared[CROP_SUM] / (state.shared[CROP_COUNT] + 10.0), 0.0)
+    chance = np.sqrt(
+        noise_v**2 * (RECENT / (2.0 - RECENT) + 1.0 / np.maximum(known, 1.0)) + 0.5 * crop_var
+    )
+    return state.recent_v[at].copy(), chance

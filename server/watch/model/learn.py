@@ -1,0 +1,155 @@
+"""What the readings themselves teach: noise, resistance, the effect of age and of a new crop."""
+
+import numpy as np
+from numpy.typing import NDArray
+
+from server.watch.model.facts import Facts
+from server.watch.model.rounds import Readings
+from server.watch.model.sizes import ONSETS_PER_CROP
+from server.watch.model.state import (
+    AGE_SUM,
+    AGE_WEIGHT,
+    COMMON_AMPS,
+    COMMON_STEP_V,
+    COMMON_V,
+    CROP_COUNT,
+    CROP_SUM,
+    ONSET_COUNT,
+    ONSET_SUM,
+    RESISTANCE,
+    RESISTANCE_VAR,
+    State,
+)
+
+Numbers = NDArray[np.float64]
+Places = NDArray[np.int64]
+
+# Share by which a reading moves its cell's noise.
+_NOISE_STEP = 0.03
+
+# How much of what was gathered is kept from round to round, or from pull to pull.
+_CROPS_KEPT, _STEPS_KEPT = 0.99, 0.9
+
+# How much of the shorts seen at pulls is kept from pull to pull, and pulls the trade's figure
+# is worth.
+_ONSETS_KEPT, _ONSETS_BEFORE = 0.998, 20.0
+
+# Surprises count up to so many standard deviations.
+_MOST = 3.0
+
+# Share of rated current by which it must have changed to teach anything about resistance.
+_LEAST_CHANGE = 0.03
+
+# Variance by which a cell's own resistance may wander between rounds.
+_TILT_WANDER = 1e-8
+
+
+def learn_noise(
+    state: State,
+    facts: Facts,
+    at: Places,
+    surprise: Numbers,
+    base_var: Numbers,
+    var: Numbers,
+    healthy: Numbers,
+) -> None:
+    """How much the readings of each healthy cell scatter: its own and the section's, half each."""
+    share = np.sqrt(base_var / var)
+    found = np.minimum(np.abs(surprise) * share, 4.0 * state.noise_v[at])
+    own = state.noise_v[at] + _NOISE_STEP * healthy * (found - state.noise_v[at])
+    least = facts.least_noise_v * 0.8
+    state.noise_v[at] = np.maximum(own, least)
+    middle = float(np.median(state.noise_v))
+    state.noise_v[at] += 0.02 * (middle - state.noise_v[at])
+
+
+def learn_crops(
+    state: State,
+    facts: Facts,
+    at: Places,
+    age: Numbers,
+    surprise: Numbers,
+    var: Numbers,
+    crop_var: float,
+) -> None:
+    """How far the voltage of a cell moves at a pull, from the first reading after it.
+
+    All cells of a section grow older together, so that only a pull, which makes one of them
+    young, tells what age does; and what the change of age does not explain is the new crop's.
+    """
+    fresh = state.fresh[at] > 0
+    if not fresh.any():
+        return
+    shared = state.shared
+    younger = age[fresh] - state.fresh[at[fresh]]
+    limit = _MOST * np.sqrt(var[fresh])
+    found = np.clip(surprise[fresh], -limit, limit)
+    kept = _CROPS_KEPT ** int(fresh.sum())
+    slope = age_slope_v(state, facts)
+    shared[AGE_WEIGHT] = kept * shared[AGE_WEIGHT] + float((younger**2 / var[fresh]).sum())
+    shared[AGE_SUM] = kept * shared[AGE_SUM] + float(
+        (younger * (found + slope * younger) / var[fresh]).sum()
+    )
+    more = float((found**2 - (var[fresh] - crop_var)).sum())
+    shared[CROP_SUM] = kept * shared[CROP_SUM] + more
+    shared[CROP_COUNT] = kept * shared[CROP_COUNT] + float(fresh.sum())
+    state.fresh[at[fresh]] = 0.0
+
+
+def age_slope_v(state: State, facts: Facts) -> float:
+    """By how much a healthy cell's voltage rises over a crop; none until pulls have shown it."""
+    before = 1.0 / facts.spread_v**2
+    return float(state.shared[AGE_SUM] / (state.shared[AGE_WEIGHT] + before))
+
+
+def learn_onsets(state: State, probability: Numbers) -> None:
+    """How many shorts begin in a crop, from how many cells had one when they were pulled."""
+    kept = _ONSETS_KEPT ** len(probability)
+    state.shared[ONSET_SUM] = kept * state.shared[ONSET_SUM] + float(probability.sum())
+    state.shared[ONSET_COUNT] = kept * state.shared[ONSET_COUNT] + float(len(probability))
+
+
+def onsets_per_crop(state: State) -> float:
+    """Shorts that begin in a crop of one cell; the trade's figure until crops have been seen."""
+    seen, count = state.shared[ONSET_SUM], state.shared[ONSET_COUNT]
+    return float((seen + _ONSETS_BEFORE * ONSETS_PER_CROP) / (count + _ONSETS_BEFORE))
+
+
+def learn_resistance(
+    state: State,
+    facts: Facts,
+    at: Places,
+    readings: Readings,
+    common: Numbers,
+    surprise: Numbers,
+    sd: Numbers,
+    healthy: Numbers,
+    tilt_v: Numbers,
+    var: Numbers,
+) -> None:
+    """How the section's voltage follows its current, and each cell's beside the section's."""
+    shared = state.shared
+    amps = float(np.median(readings.amps))
+    # What the cells share, at the current of the round: it does not hang on the resistance.
+    now = float(np.median(common)) - shared[RESISTANCE] * (facts.rated_amps - amps)
+    before, before_amps = shared[COMMON_V], shared[COMMON_AMPS]
+    if np.isfinite(before):
+        change = amps - before_amps
+        miss = now - before - shared[RESISTANCE] * change
+        noise = shared[COMMON_STEP_V]
+        if abs(change) > _LEAST_CHANGE * facts.rated_amps:
+            total = change**2 * shared[RESISTANCE_VAR] + noise**2
+            gain = change * shared[RESISTANCE_VAR] / total
+            limit = _MOST * np.sqrt(total)
+            shared[RESISTANCE] += gain * min(max(miss, -limit), limit)
+            shared[RESISTANCE] = max(shared[RESISTANCE], 0.1 * facts.resistance_ohm)
+            shared[RESISTANCE_VAR] *= 1.0 - gain * change
+        else:
+            found = min(abs(miss) * 1.2533141373155001, 4.0 * noise)
+            shared[COMMON_STEP_V] = max(
+                noise + (1.0 - _STEPS_KEPT) * (found - noise), 0.2 * facts.least_noise_v
+            )
+    shared[COMMON_V], shared[COMMON_AMPS] = now, amps
+    gain_of = state.tilt_var[at] * tilt_v / var * healthy**2
+    state.tilt[at] -= gain_of * np.clip(surprise, -_MOST * sd, _MOST * sd)
+    state.tilt_var[at] = state.tilt_var[at] * (1.0 - gain_of * tilt_v) + _TILT_WANDER

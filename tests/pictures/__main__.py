@@ -32,7 +32,8 @@ PERSON = "ines"
 README_PICTURE = ROOT / "tests" / "pictures" / "section.png"
 PLAIN_PAGES = (
     "/", "/sections", "/lots", "/log-shift", "/readings-in", "/readings-in/held",
-    "/readings-in/suspects", "/setup", "/people", "/me", "/api",
+    "/readings-in/suspects", "/setup", "/people", "/me", "/api", "/calculator",
+    "/calculator/cell-voltage", "/calculator/short-current",
 )  # fmt: skip
 
 

@@ -11,6 +11,7 @@ from server.calculator.sum import ModelDoubt, Remark
 from server.calculator.work_out import PutIn, Result, Worked
 from server.web.filters import number, number_typed, percent
 from server.web.i18n import gettext as _
+from server.web.i18n import manner, writing
 from server.web.sum_words import decimals_of, figures, told, unbroken
 
 _INDEX = re.compile(r"_(\w+)")
@@ -121,24 +122,27 @@ def answer_of(worked: Worked) -> Answer:
 def _field(put: PutIn, typed: Mapping[str, str], faults: Mapping[str, str]) -> Field:
     key, u_key = put.input.key, put.input.u_key or ""
     fault, u_fault = faults.get(key, ""), faults.get(u_key, "") if u_key else ""
-    # A field with a fault, and any beside it, shows again what stood in it.
-    value = typed.get(key, "").strip() or number_typed(put.value)
     return Field(
         key=key,
         label=_(put.input.label),
         unit=put.unit,
-        value=typed[key] if fault and key in typed else value,
+        value=typed[key] if fault and key in typed else _in_field(put.value),
         origin=_origin(put),
         hint=_(put.input.hint) if put.input.hint else "",
         fault=fault,
         u_key=u_key,
-        u_value=typed.get(u_key, "") if u_key else "",
+        u_value=typed[u_key] if u_fault else _in_field(put.u if put.u_is_typed else None),
         u_otherwise=figures(put.u, 3) if put.u is not None and not put.u_is_typed else "",
         u_origin=told(put.u_origin) if put.u_origin and not put.u_is_typed else "",
         u_fault=u_fault,
         is_typed=put.is_typed,
         is_needed=put.is_needed,
     )
+
+
+def _in_field(value: float | None) -> str:
+    """A number as a field takes it, with all its digits and the language's decimal sign."""
+    return number_typed(value).replace(".", writing(manner().language).decimal_sign)
 
 
 def _origin(put: PutIn) -> str:

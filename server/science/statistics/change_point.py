@@ -106,7 +106,8 @@ def glr_run_length(evidence: ArrayLike, window: int) -> Numbers:
     """Approximate average number of readings until a one-sided GLR reaches an evidence by chance.
 
     For independent normal readings. Asymptotic: by simulation a fourth too long at an evidence of 3
-    and within a tenth from 4 on. There is no integral equation for it, because the statistic needs the whole window.
+    and within a tenth from 4 on. There is no integral equation for it, because the statistic needs
+    the whole window.
 
     Parameters
     ----------

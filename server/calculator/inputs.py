@@ -12,6 +12,8 @@ U_PREFIX = "u_"
 _BETWEEN_DIGITS = re.compile(r"(?<=\d)[ \u00a0\u2009\u202f'](?=\d{3}(?:\D|$))")
 _NUMBER = re.compile(r"[+-]?(\d+([.,]\d*)?|[.,]\d+)([eE][+-]?\d{1,3})?", re.ASCII)
 _LONGEST = 40
+_TINIEST = 1e-9
+"""What is smaller and not zero is a slip of the pen in every unit here."""
 
 
 @dataclass(frozen=True)
@@ -61,6 +63,8 @@ class Input:
 
     def takes(self, value: float) -> bool:
         """Whether the quantity can have this value."""
+        if 0 < abs(value) < _TINIEST:
+            return False
         return (self.low < value if self.is_above else self.low <= value) and value <= self.high
 
     def takes_u(self, value: float) -> bool:

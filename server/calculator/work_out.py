@@ -4,11 +4,13 @@ import math
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 
+import numpy as np
+
 from server.calculator.filled import Filled
 from server.calculator.inputs import U_PREFIX, Input, InputFault, InputsWrong, number_of
 from server.calculator.sum import Basis, Case, ModelDoubt, Output, Remark, Sum
 from server.calculator.texts import N_, Part, Said, Word
-from server.science.errors import ScienceError
+from server.science.errors import OutOfRange, ScienceError
 from server.science.uncertainty.sensitivities import propagated
 
 _TYPED = Said(N_("typed"))
@@ -115,7 +117,8 @@ def worked(a_sum: Sum, basis: Basis, inputs: Sequence[PutIn]) -> Worked | None:
         of_model = tuple(a_sum.model_doubts(case))
         estimates = values | {doubt.key: doubt.estimate for doubt in of_model}
         doubts |= {doubt.key: doubt.u for doubt in of_model}
-        outputs = a_sum.outputs(Case(basis, estimates))
+        with np.errstate(all="ignore"):
+            outputs = a_sum.outputs(Case(basis, estimates))
         results = tuple(_result(output, basis, estimates, doubts) for output in outputs)
         by_key = {result.output.key: result.value for result in results}
         by_key |= {f"{U_PREFIX}{result.output.key}": result.u for result in results}
@@ -208,7 +211,7 @@ def _result(
     output: Output, basis: Basis, estimates: Mapping[str, float], doubts: Mapping[str, float]
 ) -> Result:
     doubts = doubts if output.has_doubt else {}
-    budget = propagated(lambda **values: output.model(values), estimates, doubts)
+    budget = propagated(lambda **values: _number(output, values), estimates, doubts)
     shares = {
         key: share
         for key, share in budget.contributions.items()
@@ -221,6 +224,18 @@ def _result(
         u=budget.standard_uncertainty,
         shares=dict(sorted(shares.items(), key=lambda pair: -pair[1])),
     )
+
+
+def _number(output: Output, values: Mapping[str, float]) -> float:
+    """The output at these numbers, which a doubt may have moved to where there is none."""
+    try:
+        with np.errstate(all="ignore"):
+            found = float(output.model(values))
+    except (ZeroDivisionError, OverflowError):
+        found = math.inf
+    if math.isinf(found):
+        raise OutOfRange(output.key, found, "finite")
+    return found
 
 
 def _unusual(basis: Basis, inputs: Sequence[PutIn]) -> list[Remark]:

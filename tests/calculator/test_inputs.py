@@ -33,6 +33,11 @@ def test_the_lowest_number_is_taken_unless_it_must_be_above():
     assert not Input("a", "A", "", 0, 10).takes(10.1)
 
 
+def test_what_is_almost_nothing_is_a_slip_of_the_pen():
+    assert not Input("a", "A", "", 0, 10, is_above=True).takes(1e-300)
+    assert Input("a", "A", "", 0, 10, is_above=True).takes(5e-7)
+
+
 def test_what_is_counted_has_no_standard_uncertainty():
     assert Input("cells", "Cells", "", 0, 10, has_doubt=False).u_key is None
     assert Input("volts", "Volts", "V", 0, 10).u_key == "u_volts"

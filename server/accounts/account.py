@@ -10,6 +10,7 @@ from server.accounts.errors import WrongPeriod
 from server.accounts.ledger import ledger, waterfall
 from server.accounts.metal import crop_account, made_account
 from server.accounts.results import Account, Charge, Crops, Energy, HouseAccount, Made
+from server.accounts.short_charge import shorts_account
 from server.accounts.stock import StockBook
 from server.accounts.working import workings
 from server.science.constants import Metal
@@ -50,6 +51,7 @@ def section_account(
     ]
     made = made_account(section, metal, passed, crops.weighed_kg, *stock)
     energy = energy_account(session, house, section, passed, made, from_ms, to_ms)
+    shorts = shorts_account(session, section, from_ms, to_ms)
     charge = Charge(
         section_c=passed.section_c,
         cell_c=passed.cells_c,
@@ -69,9 +71,9 @@ def section_account(
         crops=crops,
         period=made,
         energy=energy,
-        ledger=ledger(passed.cells_c, made, metal),
+        ledger=ledger(passed.cells_c, made, metal, shorts),
         waterfall=waterfall(energy, made, metal),
-        working=workings(charge, crops, made, energy, metal, terms),
+        working=workings(charge, crops, made, energy, metal, terms, shorts),
         remarks=tuple(_remarks(passed, crops, made, energy)),
         target_current_efficiency=terms.target_current_efficiency,
         target_specific_energy_j_kg=terms.target_specific_energy_j_kg,

@@ -61,6 +61,18 @@ class Energy:
 
 
 @dataclass(frozen=True)
+class Shorts:
+    """What the watch expects to have passed through shorts, flagged or not."""
+
+    charge_c: float
+    u_charge_c: float
+    watched_c: float
+    """The cells' charge for which a round speaks."""
+    relative_u_resistance: float
+    """Of the resistance by which a missing voltage becomes a current; common to all cells."""
+
+
+@dataclass(frozen=True)
 class LedgerItem:
     """Where a part of the ampere-hours went."""
 

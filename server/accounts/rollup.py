@@ -11,6 +11,7 @@ from server.accounts.charge import ChargeRecord, charge_record, rebuild_charge
 from server.accounts.crops import recharge_crops, replay_lots
 from server.accounts.energy_days import REACH_MS, energy_of_day, readings_under_load
 from server.accounts.periods import DAY_MS, utc_day_ms
+from server.accounts.short_charge import HOLD_MS, rebuild_short_days
 from server.accounts.summaries import periods_touching, rebuild_summaries
 from server.storage.current import bypasses_of
 from server.storage.latest import keep_latest
@@ -118,20 +119,27 @@ def _after_both(
     if hand is None:
         hand = _at_hand(session, section, from_ms - _AROUND_MS, to_ms + _AROUND_MS)
     _energy(session, section, *_bent_days(session, section, from_ms, to_ms, hand), hand)
-    _mark_watch(session, section, from_ms)
+    _mark_watch(session, section, from_ms, to_ms)
 
 
 def _after_lots(session: Session, section: SectionPlan, from_ms: int) -> None:
     """What was pulled changed: crops, and what the watch holds against what."""
     replay_lots(session, section, from_ms)
-    _mark_watch(session, section, from_ms)
+    _mark_watch(session, section, from_ms, _FAR_MS)
 
 
-def _mark_watch(session: Session, section: SectionPlan, from_ms: int) -> None:
-    """The watch goes on from what it remembers, so that it is replayed to its end."""
+def _mark_watch(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> None:
+    """The watch goes on from what it remembers, so that it is replayed to its end.
+
+    What happens after the last reading changes only for how much charge it speaks.
+    """
     span = span_ms(session, section.cell_ids)
-    if span is not None and from_ms <= span[1]:
+    if span is None or from_ms > span[1] + HOLD_MS:
+        return
+    if from_ms <= span[1]:
         mark(session, section.id, "flags", from_ms, span[1] + 1)
+    else:
+        rebuild_short_days(session, section, from_ms, min(to_ms, span[1] + HOLD_MS))
 
 
 def _bent_days(
@@ -202,3 +210,4 @@ def _watch(session: Session, section: SectionPlan, from_ms: int, to_ms: int) -> 
         return Heard(hand.loaded, hand.series.where(hand.series.suspect != 0), hand.bypasses)
 
     rewatch(session, section, from_ms, to_ms, span[1] if span else to_ms, hear)
+    rebuild_short_days(session, section, from_ms, to_ms)

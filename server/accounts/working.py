@@ -1,7 +1,7 @@
 """How each figure of an account was worked out, as the page and the API show it."""
 
 from server.accounts.doubt import ESTIMATED_CURRENT, STOCK_MODEL
-from server.accounts.results import Charge, Crops, Energy, Input, Made, Working
+from server.accounts.results import Charge, Crops, Energy, Input, Made, Shorts, Working
 from server.science.constants import FARADAY_C_MOL, Metal
 from server.science.faraday import equivalent_kg_c
 from server.science.units import kah_from_coulombs, kwh_from_joules, kwh_t_from_j_kg
@@ -23,6 +23,7 @@ def workings(
     energy: Energy,
     metal: Metal,
     terms: SectionTerms,
+    shorts: Shorts | None = None,
 ) -> tuple[Working, ...]:
     """One working for each figure, with its formula, inputs and their sources."""
     per_kah = float(equivalent_kg_c(metal)) * 3.6e6
@@ -113,5 +114,37 @@ def workings(
             (Input("DC energy", dc_kwh, "kWh", "voltages and current log"), made_kg),
             specific,
             "kWh/t",
+        ),
+        *_of_shorts(shorts, cell_kah),
+    )
+
+
+def _of_shorts(shorts: Shorts | None, cell_kah: Input) -> tuple[Working, ...]:
+    """The working of the charge through shorts; none where no readings speak for it."""
+    if shorts is None:
+        return ()
+    return (
+        Working(
+            "ledger.shorts_kah",
+            "sum over cells of the integral of (I_s / I) dQ, I_s = -deviation / R_d, each held to"
+            " the cell's next round",
+            (
+                Input("watched charge", _kah(shorts.watched_c), "kAh", "charge after a reading"),
+                cell_kah,
+                Input(
+                    "uncertainty of R_d",
+                    shorts.relative_u_resistance * 100,
+                    "%",
+                    "rounds at different currents, or the plant set-up",
+                ),
+                Input(
+                    "uncertainty",
+                    _kah(shorts.u_charge_c),
+                    "kAh",
+                    "each cell's own, R_d, between rounds",
+                ),
+            ),
+            _kah(shorts.charge_c),
+            "kAh",
         ),
     )

@@ -18,6 +18,7 @@ _DERIVED = (
     "flag",
     "watched_round",
     "watch_state",
+    "short_day",
     "stale",
 )
 

@@ -9,9 +9,21 @@ from server.storage import (
     plant,
     readings,
     records,
+    short_days,
     watch_rows,
 )
 from server.storage.base import Base
 
 METADATA = Base.metadata
-MODULES = (deliveries, derived, flag_acts, flags, people, plant, readings, records, watch_rows)
+MODULES = (
+    deliveries,
+    derived,
+    flag_acts,
+    flags,
+    people,
+    plant,
+    readings,
+    records,
+    short_days,
+    watch_rows,
+)

@@ -28,6 +28,8 @@ class FlagResult:
     lost_kg_per_day: float | None
     lost_value_per_day: float | None
     evidence: str
+    probability: float | None
+    """Of a short, as stated when it was raised; None for what is no short."""
 
 
 def flag_result(house: House, flag: Flag) -> FlagResult:
@@ -49,6 +51,7 @@ def flag_result(house: House, flag: Flag) -> FlagResult:
         lost_kg_per_day=flag.lost_kg_per_day,
         lost_value_per_day=flag.lost_value_per_day,
         evidence=flag.evidence,
+        probability=flag.probability,
     )
 
 

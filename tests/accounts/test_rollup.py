@@ -38,6 +38,7 @@ DERIVED = (
     "latest_reading",
     "crop",
     "flag",
+    "short_day",
 )
 
 

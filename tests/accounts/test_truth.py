@@ -10,12 +10,16 @@ import pytest
 
 from server.accounts.account import metal_of, section_account
 from server.accounts.results import Account
+from server.accounts.short_charge import shorts_account
 from server.accounts.stock import stock_at
 from server.demo.truth import AccountTruth, account
 from tests.accounts.conftest import KeptHouse
 
 DAY_MS = 86_400_000
 SECTIONS = ("EW1", "ER1", "ZN1")
+LEAST_SHARE = 0.002
+"""Of the charge through shorts, below which most come and go between two rounds."""
+
 WINDOWS = {"all of it": (0, 60), "a month": (20, 50), "a cut week": (30.3, 37.7)}
 
 
@@ -141,3 +145,60 @@ def test_each_cell_holds_the_stock_that_its_charge_could_have_made(truth, sectio
 
     true_kg = truth.made_up.truth(section_name).stock_kg(at_ms)
     assert stock.kg == pytest.approx(true_kg, rel=0.08, abs=0.02 * true_kg.max())
+
+
+def test_shorts_agree_within_a_fifth_over_sixty_days_where_they_matter(truth, section_name):
+    made_up = truth.made_up.truth(section_name)
+    span = made_up.start_ms, made_up.start_ms + 60 * DAY_MS
+    true = account(made_up, *span)
+
+    found = shorts_account(truth.session, truth.house.section(section_name), *span)
+
+    assert found is not None
+    if true.short_charge_c > LEAST_SHARE * true.cell_charge_c:
+        assert found.charge_c == pytest.approx(true.short_charge_c, rel=0.2)
+        assert abs(found.charge_c - true.short_charge_c) < 2 * found.u_charge_c
+        assert found.u_charge_c < 0.2 * found.charge_c
+    else:
+        assert section_name == "ZN1"
+        assert 0 <= found.charge_c < LEAST_SHARE * true.cell_charge_c
+
+
+def test_shorts_are_an_item_of_their_own_and_leave_less_unexplained(pair):
+    books, _ = pair
+
+    items = {item.item: item for item in books.ledger}
+    assert list(items) == ["metal", "shorts", "not explained"]
+    assert items["shorts"].charge_c >= 0
+    assert items["shorts"].u_share > 0
+    assert "% of the charge" in items["shorts"].basis
+    assert items["not explained"].u_share >= items["metal"].u_share
+    working = next(w for w in books.working if w.figure == "ledger.shorts_kah")
+    assert working.value == pytest.approx(items["shorts"].charge_c / 3.6e6)
+
+
+def test_shorts_of_the_parts_of_a_period_add_up(truth, section_name):
+    section = truth.house.section(section_name)
+    start_ms = truth.made_up.start_ms
+    cuts = [start_ms + round(day * DAY_MS) for day in (10, 10.3, 17.21, 31.5, 44)]
+
+    whole = shorts_account(truth.session, section, cuts[0], cuts[-1])
+    parts = [
+        shorts_account(truth.session, section, a, b) for a, b in zip(cuts, cuts[1:], strict=False)
+    ]
+
+    assert sum(p.charge_c for p in parts) == pytest.approx(whole.charge_c, rel=1e-9)
+    assert sum(p.watched_c for p in parts) == pytest.approx(whole.watched_c, rel=1e-9)
+
+
+def test_where_no_cell_was_read_there_is_no_item_of_shorts(truth, section_name):
+    start_ms = truth.made_up.start_ms
+
+    before = section_account(truth.session, truth.house, section_name, start_ms - DAY_MS, start_ms)
+    first_hour = section_account(
+        truth.session, truth.house, section_name, start_ms, start_ms + DAY_MS // 96
+    )
+
+    assert before.ledger == ()
+    assert "shorts" not in {item.item for item in first_hour.ledger}
+    assert first_hour.ledger[-1].basis.endswith("no cell was read")

@@ -137,6 +137,7 @@ def test_recompute_makes_the_same_figures_again(filled):
         "summary": "section_id, level, start_ms",
         "latest_reading": "cell_id",
         "bypassed_cell": "cell_id, from_ms",
+        "short_day": "section_id, day_ms",
     }
 
     def derived():

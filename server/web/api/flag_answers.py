@@ -36,6 +36,7 @@ def _fields(flag: FlagResult, life: FlagLife) -> dict[str, Any]:
         "u_short_ka": known(flag.u_short_amps, ka_from_amps),
         "lost_kg_per_day": flag.lost_kg_per_day,
         "lost_value_per_day": flag.lost_value_per_day,
+        "probability": flag.probability,
         "evidence": flag.evidence,
         "state": life.state,
         "shelved_until": life.shelved_until_ms,
@@ -43,4 +44,5 @@ def _fields(flag: FlagResult, life: FlagLife) -> dict[str, Any]:
         "assigned_to": life.assigned_to,
         "ended_by": life.ended_by,
         "verdict": life.verdict,
+        "probability": flag.probability,
     }

@@ -27,6 +27,7 @@ FLAG_EXAMPLE: JsonDict = {
     "u_short_ka": 0.2,
     "lost_kg_per_day": 24.0,
     "lost_value_per_day": 204.0,
+    "probability": None,
     "evidence": "1.870 V, below the 1.95 V that the section's cells should show.",
     "state": "working",
     "shelved_until": None,
@@ -34,6 +35,7 @@ FLAG_EXAMPLE: JsonDict = {
     "assigned_to": "mira",
     "ended_by": None,
     "verdict": None,
+    "probability": None,
 }
 
 
@@ -61,6 +63,8 @@ class FlagAnswer(Answer):
     lost_kg_per_day: float | None
     lost_value_per_day: float | None
     """In the tankhouse's currency."""
+    probability: float | None
+    """Of a short, 0 to 1, as stated when the flag was raised; null for what is no short."""
     evidence: str
     """One sentence that a person can read."""
     state: State
@@ -74,6 +78,8 @@ class FlagAnswer(Answer):
     ended_by: Literal["evidence", "pull", "find", "person"] | None
     verdict: Literal["hit", "false call", "something else"] | None
     """What was found at the cell says so of the flag; null while nobody has looked."""
+    probability: float | None
+    """Of a short, 0 to 1, as stated when it was raised; null for what is no short."""
 
 
 class Flags(Answer):

@@ -10,6 +10,10 @@ from server.web.i18n import ngettext
 
 _OF_LOTS = re.compile(r"(\d+) lots, net less starters")
 
+_OF_SHORTS = re.compile(
+    r"what the watch expects of each cell from its readings, over (\d+) % of the charge"
+)
+
 
 def account_words(text: str) -> str:
     """A text of an account; symbols and whatever has no words of ours stay as they are."""
@@ -19,6 +23,11 @@ def account_words(text: str) -> str:
         return ngettext(
             "%(num)s lot, net less starters", "%(num)s lots, net less starters", lots
         ) % {"num": lots}
+    of_shorts = _OF_SHORTS.fullmatch(text)
+    if of_shorts:
+        return _(
+            "what the watch expects of each cell from its readings, over %(pct)s %% of the charge"
+        ) % {"pct": of_shorts[1]}
     return {**_formulas(), **_inputs(), **_sources()}.get(text, text)
 
 
@@ -41,6 +50,11 @@ def _formulas() -> dict[str, str]:
             "integral of V I dt, V(t) = V_ref(t) + R_d (I(t) - I_ref), summed over cells"
         ),
         "DC energy / made": _("DC energy / made"),
+        "sum over cells of the integral of (I_s / I) dQ, I_s = -deviation / R_d, each held to"
+        " the cell's next round": _(
+            "sum over cells of the integral of (I_s / I) dQ, I_s = -deviation / R_d, each held to"
+            " the cell's next round"
+        ),
     }
 
 
@@ -61,6 +75,9 @@ def _inputs() -> dict[str, str]:
         "scale accuracy": _("scale accuracy"),
         "current accuracy": _("current accuracy"),
         "estimated current": _("estimated current"),
+        "watched charge": _("watched charge"),
+        "uncertainty of R_d": _("uncertainty of R_d"),
+        "uncertainty": _("uncertainty"),
     }
 
 
@@ -84,4 +101,12 @@ def _sources() -> dict[str, str]:
             "harvested and change of stock, by Faraday's law"
         ),
         "what is left of the cells' charge": _("what is left of the cells' charge"),
+        "what is left of the cells' charge, shorts among it: no cell was read": _(
+            "what is left of the cells' charge, shorts among it: no cell was read"
+        ),
+        "charge after a reading": _("charge after a reading"),
+        "rounds at different currents, or the plant set-up": _(
+            "rounds at different currents, or the plant set-up"
+        ),
+        "each cell's own, R_d, between rounds": _("each cell's own, R_d, between rounds"),
     }

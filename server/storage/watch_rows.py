@@ -16,13 +16,15 @@ OF_A_CELL = np.dtype(
         ("expected_v", "<f4"),
         ("short_amps", "<f4"),
         ("u_short_amps", "<f4"),
+        ("deviation_v", "<f2"),
         ("band_v", "<f2"),
         ("probability", "<f2"),
     ]
 )
 """One cell in a round: when it was read (0: it was not), what a healthy one would have read, the
 expected short current (none included), the standard uncertainty of the short current if there is
-one, the standard uncertainty of the expected voltage, and the probability of a short."""
+one, how far the reading lay above what was expected, the standard uncertainty of that, and the
+probability of a short."""
 
 
 class WatchedRound(Base):

@@ -162,6 +162,7 @@ def _row(section: SectionPlan, outcome: Outcome) -> tuple[int, int, float, bytes
     own["expected_v"] = outcome.expected_v
     own["short_amps"] = outcome.short_amps
     own["u_short_amps"] = outcome.u_given_amps
+    own["deviation_v"] = np.clip(readings.volts - outcome.expected_v, -6e4, 6e4)
     own["band_v"] = outcome.band_v
     own["probability"] = outcome.probability
     cells[readings.place] = own

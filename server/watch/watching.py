@@ -25,7 +25,7 @@ from server.watch.model.facts import facts_of
 from server.watch.model.raising import Raised
 from server.watch.model.replay import Doubted, Pulls, Replayed, Stays, replay
 from server.watch.model.rounds import PAUSE_MS, ordered
-from server.watch.model.state import KINDS, State, fresh_state, unpacked
+from server.watch.model.state import KINDS, State, unpacked
 from server.watch.model.step import Outcome
 
 _DAY_MS = 86_400_000
@@ -60,7 +60,7 @@ def rewatch(
         section.id,
         start_ms,
         to_ms,
-        [_row(section, outcome) for part in parts for outcome in part.outcomes],
+        [_row(outcome, len(part.state.known)) for part in parts for outcome in part.outcomes],
     )
     keep_states(
         session,
@@ -80,7 +80,7 @@ def _replayed(
     to_ms: int,
     newest_ms: int,
 ) -> list[Replayed]:
-    """The rounds of each stretch with the same make of cells, one after the other."""
+    """The rounds of each stretch with the same terms, one after the other."""
     state = unpacked(kept[2]) if kept else None
     last_ms = kept[1] if kept else None
     loaded = heard.loaded
@@ -95,24 +95,20 @@ def _replayed(
 
     crops = crops_pulled(session, section.id, 0, to_ms + _LONGEST_ROUND_MS)
     parts: list[Replayed] = []
-    for terms, start_ms, end_ms in _makes(section):
+    # What is remembered is of the cells that there were in the last round before.
+    former = None if last_ms is None else section.terms_at(last_ms)
+    for terms, start_ms, end_ms in _stretches(section):
         stretch = (max(start_ms, 0 if last_ms is None else last_ms + 1), min(end_ms, to_ms))
         if stretch[0] >= stretch[1]:
             continue
         facts = facts_of(section, terms)
-        if state is None or len(state.known) != facts.cells or parts:
-            state = _renewed(state, fresh_state(facts))
         # A round that begins before the end is heard to its end.
         series = loaded.series
         until_ms = min(end_ms, stretch[1] + _LONGEST_ROUND_MS)
-        use = (series.at_ms >= stretch[0]) & (series.at_ms < until_ms)
-        readings = ordered(
-            series.at_ms[use],
-            np.searchsorted(ids, series.cell_id[use]),
-            series.volts[use],
-            loaded.amps[use],
-        )
-        doubted = heard.doubted.within(stretch[0], stretch[1])
+        place = np.searchsorted(ids, series.cell_id)
+        use = (series.at_ms >= stretch[0]) & (series.at_ms < until_ms) & (place < terms.cells)
+        readings = ordered(series.at_ms[use], place[use], series.volts[use], loaded.amps[use])
+        doubted = heard.doubted.within(0 if last_ms is None else last_ms + 1, stretch[1])
         order = np.lexsort((doubted.cell_id, doubted.at_ms))
         part = replay(
             facts,
@@ -124,29 +120,33 @@ def _replayed(
                 doubted.at_ms[order],
             ),
             stretch[1],
-            state if last_ms is not None or parts else None,
+            None if last_ms is None else state,
             last_ms,
             keeps,
+            former is None or _make(former) == _make(terms),
+            end_ms >= to_ms,
         )
+        if part.outcomes:
+            former = terms
         state, last_ms = part.state, part.last_ms
         parts.append(part)
     return parts
 
 
-def _makes(section: SectionPlan) -> list[tuple[SectionTerms, int, int]]:
+def _make(terms: SectionTerms) -> tuple[object, ...]:
+    """What makes the cells others than they were: their voltages have to be learned anew."""
+    return (
+        terms.cathodes_per_cell,
+        terms.cathode_area_m2,
+        terms.electrode_gap_m,
+        terms.differential_resistance_ohm,
+    )
+
+
+def _stretches(section: SectionPlan) -> list[tuple[SectionTerms, int, int]]:
     """The terms of a section with the time in which each holds."""
     ends = [terms.from_ms for terms in section.terms[1:]] + [2**60]
     return [(terms, terms.from_ms, end) for terms, end in zip(section.terms, ends, strict=True)]
-
-
-def _renewed(former: State | None, fresh: State) -> State:
-    """A state for cells that were made anew, with the flags that are open on them."""
-    if former is None:
-        return fresh
-    shared = min(len(former.known), len(fresh.known))
-    for name in ("raised_ms", "acting", "calm", "hung_ms"):
-        getattr(fresh, name)[:shared] = getattr(former, name)[:shared]
-    return fresh
 
 
 def _stays(ids: NDArray[np.int64], bypasses: list[tuple[int, int, int]]) -> Stays:
@@ -154,9 +154,9 @@ def _stays(ids: NDArray[np.int64], bypasses: list[tuple[int, int, int]]) -> Stay
     return Stays(np.searchsorted(ids, rows[:, 0]), rows[:, 1], rows[:, 2])
 
 
-def _row(section: SectionPlan, outcome: Outcome) -> tuple[int, int, float, bytes]:
+def _row(outcome: Outcome, cells_there: int) -> tuple[int, int, float, bytes]:
     readings = outcome.readings
-    cells = np.zeros(len(section.cell_ids), OF_A_CELL)
+    cells = np.zeros(cells_there, OF_A_CELL)
     own = np.zeros(len(readings.at_ms), OF_A_CELL)
     own["at_ms"] = readings.at_ms
     own["expected_v"] = outcome.expected_v

@@ -40,7 +40,7 @@ def facts_of(section: SectionPlan, terms: SectionTerms) -> Facts:
     least_v = float(standard_from_limit(terms.meter_accuracy_v))
     crop_days = process(section.process, section.metal, section.electrons).crop_days
     return Facts(
-        cells=len(section.cell_ids),
+        cells=terms.cells,
         rated_amps=terms.rated_amps,
         resistance_ohm=resistance,
         u_resistance_ohm=resistance * relative_u_resistance(section, terms),

@@ -74,6 +74,12 @@ def end_at_pull(state: State, book: Book, places: Places, pulled_ms: NDArray[np.
             _end(state, book, place, SHORT, at_ms)
 
 
+def end_all(state: State, book: Book, first: int, at_ms: int) -> None:
+    """End every flag of the cells from a place on: they are not there any more."""
+    for place, kind in np.argwhere(state.raised_ms[first:] > 0).tolist():
+        _end(state, book, first + place, kind, at_ms)
+
+
 def judge(state: State, book: Book, outcome: Outcome) -> None:
     """Raise and end flags by what a round said."""
     at, at_ms = outcome.readings.place, outcome.readings.at_ms
@@ -150,6 +156,7 @@ def miss(state: State, book: Book, unread: Places, at_ms: int) -> None:
 
 def doubt(state: State, book: Book, place: int, at_ms: int) -> None:
     """A reading that is not believed; the next that is ends the flag."""
+    state.missed[place] = 0.0
     if state.raised_ms[place, SUSPECT] == 0:
         _raise(state, book, place, SUSPECT, at_ms, False, None, -1)
 

@@ -36,7 +36,7 @@ class State:
     known: Numbers
     """Readings that the cell's level rests on."""
     fresh: Numbers
-    """1 from a pull to the first reading after it."""
+    """From a pull to the first reading after it: the age of the crop that was pulled; else 0."""
     reference_v: Numbers
     """What the cell read above the section over the last weeks."""
     recent_v: Numbers
@@ -116,6 +116,25 @@ def fresh_state(facts: Facts) -> State:
         calm=np.zeros((cells, len(KINDS))),
         shared=shared,
     )
+
+
+# Of what is known of cells that are made anew, this stays.
+_KEPT = ("raised_ms", "acting", "calm", "hung_ms")
+
+
+def refitted(former: State, facts: Facts, is_same_make: bool) -> State:
+    """The state for another number of cells, or for cells that were made anew."""
+    cells = min(facts.cells, len(former.known))
+    if is_same_make and cells == facts.cells == len(former.known):
+        return former
+    fresh = fresh_state(facts)
+    if is_same_make:
+        fresh.shared = former.shared.copy()
+        fresh.level_var[:] = former.shared[SPREAD_V] ** 2
+    for name in _KEPT if not is_same_make else (part.name for part in fields(State)):
+        if name != "shared":
+            getattr(fresh, name)[:cells] = getattr(former, name)[:cells]
+    return fresh
 
 
 # Mean absolute deviation of a normal distribution, in standard deviations: root of 2 / pi.

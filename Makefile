@@ -1,6 +1,6 @@
 # Each command makes ready what it needs by itself; see .ci/environment.
 .DEFAULT_GOAL := help
-.PHONY: help demo test bench pictures lint format locale lock upgrade wheel wheelhouse clean
+.PHONY: help demo test bench watch-score pictures lint format locale lock upgrade wheel wheelhouse clean
 
 PYTHON := .venv/bin/python
 
@@ -8,6 +8,7 @@ help:
 	@echo "make demo        see it run: a made-up tankhouse on 127.0.0.1"
 	@echo "make test        see it pass its tests: both databases, published values, a real browser"
 	@echo "make bench       how fast it is, as ratios on this machine"
+	@echo "make watch-score how well the watch sees, on made-up plants; WRITE=1 puts it into DEVELOPERS.md"
 	@echo "make pictures    every page of the demo, at a desk and on a phone, into build/pictures/"
 	@echo "make lint        formatter, linter and type checker"
 	@echo "make format      let the formatter decide"
@@ -29,6 +30,10 @@ test:
 bench:
 	@.ci/environment dev
 	@$(PYTHON) -m tests.bench
+
+watch-score:
+	@.ci/environment dev
+	@$(PYTHON) -m tests.watch.score $(if $(WRITE),--write)
 
 pictures:
 	@.ci/environment dev

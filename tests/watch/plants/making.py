@@ -102,7 +102,8 @@ def _healthy(scenario: Scenario, hung: Hung, rng: np.random.Generator) -> tuple[
     trade, common, cells = scenario.trade, scenario.common, scenario.cells
     steps = scenario.steps
     level_v = rng.normal(0.0, trade.level_v, cells)
-    seat_v = rng.normal(0.0, trade.seat_v, (int(hung.crop_of.max()) + 1, cells))
+    seat_sd_v = trade.seat_v * scenario.seat_factor
+    seat_v = rng.normal(0.0, seat_sd_v, (int(hung.crop_of.max()) + 1, cells))
     own_age = rng.normal(1.0, 0.1, cells)
     age = np.maximum(hung.age_days, 0.0)
     age_v = trade.fresh_v * np.exp(-24.0 * age / trade.fresh_h)

@@ -53,7 +53,7 @@ class Shorts:
 
     per_crop: float | None = None
     """Expected in a full crop of a cell if nobody looks; the trade's own when None."""
-    share: float = 0.045
+    share: float = 0.055
     """Median share of the cell's current that a grown short takes."""
     share_spread: float = 0.6
     """Standard deviation of the natural logarithm of that share."""
@@ -178,6 +178,9 @@ class Scenario:
     pen: Pen = field(default_factory=Pen)
     crops: Crops = field(default_factory=Crops)
     noise_factor: float = 1.0
+    seat_factor: float = 1.0
+    only_steps: bool = False
+    """Made to count large steps alone: their ampere-hours would outweigh all others."""
     states_resistance: bool = True
     """Whether plant.toml states the differential resistance."""
 

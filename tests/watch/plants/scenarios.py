@@ -17,7 +17,7 @@ ELECTROWINNING = Trade(
     resistive_v=0.40,
     noise_v=0.006,
     level_v=0.025,
-    seat_v=0.002,
+    seat_v=0.0012,
     fresh_v=0.008,
     growth_v=-0.012,
     rated_amps=36_000.0,
@@ -29,7 +29,7 @@ ELECTROWINNING = Trade(
     target_kwh_t=1_900.0,
     limits_v=(1.88, 2.12),
     crop_days=7,
-    shorts_per_crop=0.10,
+    shorts_per_crop=0.30,
 )
 REFINING = Trade(
     process="copper electrorefining",
@@ -37,7 +37,7 @@ REFINING = Trade(
     resistive_v=0.27,
     noise_v=0.002,
     level_v=0.008,
-    seat_v=0.0007,
+    seat_v=0.0004,
     fresh_v=0.003,
     growth_v=0.006,
     rated_amps=30_000.0,
@@ -49,7 +49,7 @@ REFINING = Trade(
     target_kwh_t=330.0,
     limits_v=(0.25, 0.35),
     crop_days=10,
-    shorts_per_crop=0.20,
+    shorts_per_crop=0.45,
 )
 ZINC = Trade(
     process="zinc electrowinning",
@@ -57,7 +57,7 @@ ZINC = Trade(
     resistive_v=0.85,
     noise_v=0.010,
     level_v=0.025,
-    seat_v=0.003,
+    seat_v=0.002,
     fresh_v=0.015,
     growth_v=-0.012,
     rated_amps=40_000.0,
@@ -69,10 +69,12 @@ ZINC = Trade(
     target_kwh_t=3_150.0,
     limits_v=(3.12, 3.48),
     crop_days=2,
-    shorts_per_crop=0.05,
+    shorts_per_crop=0.12,
     fresh_h=3.0,
 )
 NONE = Shorts(per_crop=0.0)
+LARGE = Shorts(per_crop=0.40, share=0.14, share_spread=0.35, sudden=1.0)
+"""Sudden and large, to count steps."""
 SLOW = (
     Drifts("contact", cells=6),
     Drifts("anode", cells=4),
@@ -89,7 +91,8 @@ SCENARIOS = (
         ELECTROWINNING,
         cells=72,
         crops=Crops(days=4),
-        shorts=Shorts(per_crop=0.08, sudden=0.8),
+        shorts=Shorts(per_crop=0.20, sudden=0.8),
+        seat_factor=2.5,
         pen=Pen(rounds_a_day=2, walk_s=40.0),
         states_resistance=False,
     ),
@@ -102,7 +105,7 @@ SCENARIOS = (
     Scenario(
         "ew growing shorts, several in a cell",
         ELECTROWINNING,
-        shorts=Shorts(per_crop=0.15, sudden=0.1, growth_h=(6.0, 40.0), another=0.5, creeping=4),
+        shorts=Shorts(per_crop=0.35, sudden=0.1, growth_h=(6.0, 40.0), another=0.5, creeping=4),
         noise_factor=0.85,
     ),
     Scenario(
@@ -116,12 +119,12 @@ SCENARIOS = (
         pen=Pen(rounding_v=0.010, rounds_a_day=2),
         noise_factor=1.3,
     ),
-    Scenario("ew drifts", ELECTROWINNING, cells=90, shorts=Shorts(per_crop=0.03), drifts=SLOW),
+    Scenario("ew drifts", ELECTROWINNING, cells=90, shorts=Shorts(per_crop=0.10), drifts=SLOW),
     Scenario(
         "ew trips and a new set-point",
         ELECTROWINNING,
         current=Current(trips_in_walk=6, trip_days=8.0, steps=((25.0, 0.86), (44.0, 1.12))),
-        shorts=Shorts(per_crop=0.04),
+        shorts=Shorts(per_crop=0.15),
     ),
     Scenario(
         "ew another meter, slower walk, gaps",
@@ -142,14 +145,15 @@ SCENARIOS = (
     Scenario(
         "ew every fourth cell",
         ELECTROWINNING,
-        shorts=Shorts(every_fourth=((-1, 4), (24, 40)), per_crop=0.05),
+        shorts=Shorts(every_fourth=((-1, 4), (24, 40)), per_crop=0.10),
     ),
     Scenario(
         "ew slips of the pen",
         ELECTROWINNING,
         pen=Pen(errors=0.002),
-        shorts=Shorts(per_crop=0.06),
+        shorts=Shorts(per_crop=0.20),
     ),
+    Scenario("ew large steps", ELECTROWINNING, cells=100, shorts=LARGE, only_steps=True),
     Scenario("ew quiet", ELECTROWINNING, cells=100, shorts=NONE),
     Scenario(
         "ew quiet, swings and cuts",
@@ -168,12 +172,12 @@ SCENARIOS = (
         drifts=(
             Drifts("passivation", cells=14, sigma_a_week=14.0, from_days=(10, 50), lasts_days=6.0),
         ),
-        shorts=Shorts(per_crop=0.08),
+        shorts=Shorts(per_crop=0.25),
     ),
     Scenario(
         "er every fourth cell",
         REFINING,
-        shorts=Shorts(every_fourth=((0, 5), (26, 44)), per_crop=0.1),
+        shorts=Shorts(every_fourth=((0, 5), (26, 44)), per_crop=0.2),
         states_resistance=False,
     ),
     Scenario(
@@ -192,15 +196,17 @@ SCENARIOS = (
         REFINING,
         common=Common(temperature_k=2.5, acid_v=0.002),
         current=Current(cut=0.3, trips_in_walk=3, steps=((33.0, 1.08),)),
+        seat_factor=2.0,
         states_resistance=False,
     ),
-    Scenario("er drifts", REFINING, cells=90, shorts=Shorts(per_crop=0.06), drifts=SLOW),
+    Scenario("er drifts", REFINING, cells=90, shorts=Shorts(per_crop=0.20), drifts=SLOW),
     Scenario(
         "er fourteen-day crops, creeping",
         REFINING,
         crops=Crops(days=14),
         shorts=Shorts(creeping=10, stubborn=2),
     ),
+    Scenario("er large steps", REFINING, cells=100, shorts=LARGE, only_steps=True),
     Scenario("er quiet", REFINING, cells=100, shorts=NONE, common=Common(acid_v=0.001)),
     Scenario(
         "er quiet, pulled at once",
@@ -219,14 +225,14 @@ SCENARIOS = (
         current=Current(cut=0.45, cut_hours=(7, 23), logs_steps=True),
         states_resistance=False,
     ),
-    Scenario("zn drifts", ZINC, cells=72, drifts=UP, shorts=Shorts(per_crop=0.015)),
+    Scenario("zn drifts", ZINC, cells=72, drifts=UP, shorts=Shorts(per_crop=0.04)),
     Scenario(
         "zn start-up",
         ZINC,
         cells=96,
         days=8,
         current=Current(ramp_days=3.0),
-        shorts=Shorts(per_crop=0.08, standing=6),
+        shorts=Shorts(per_crop=0.15, standing=6),
     ),
     Scenario(
         "zn re-hung and bypassed",
@@ -247,6 +253,7 @@ SCENARIOS = (
         pen=Pen(errors=0.002, rounding_v=0.010),
         current=Current(trips_in_walk=5, trip_days=10.0),
     ),
+    Scenario("zn large steps", ZINC, cells=100, shorts=LARGE, crops=Crops(days=4), only_steps=True),
     Scenario(
         "zn quiet",
         ZINC,

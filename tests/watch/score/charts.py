@@ -69,7 +69,12 @@ def has_cause(plant: Plant) -> Truths:
 
 
 def limit_for(scored: Sequence[Scored], low: float, high: float) -> float:
-    """The limit at which plants together raise the share asked for falsely, by halving."""
+    """The limit at which plants together raise the share asked for falsely, by halving.
+
+    Plants that were made for one measure alone have no say, unless there are no others.
+    """
+    of_usual = [one for one in scored if not one.plant.scenario.only_steps]
+    scored = of_usual or scored
     readings = sum(int(one.plant.is_read.sum()) for one in scored)
     causes = [has_cause(one.plant) for one in scored]
     for _ in range(14):

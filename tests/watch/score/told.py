@@ -7,11 +7,14 @@ moves it from reading to reading by Bayes' rule (Shiryaev's recursion over a gri
 begin, grow and end at rates as the trade knows them, and are gone with the cathodes.
 """
 
+from collections.abc import Sequence
+from dataclasses import replace
+
 import numpy as np
 
 from tests.watch.plants.plant import Numbers, Plant
-from tests.watch.score.charts import Scored
-from tests.watch.score.watched import Flag, Watched
+from tests.watch.score.charts import Scored, flags_of, limit_for
+from tests.watch.score.watched import Case, Watched
 
 SHARES = np.geomspace(0.004, 0.4, 18)
 """Sizes, as shares of the cell's current."""
@@ -96,8 +99,11 @@ def _moved(weight: Numbers, onset: Numbers) -> Numbers:
     )
 
 
-def with_flags(watched: Watched, flags: tuple[Flag, ...]) -> Watched:
-    """The same with its flags."""
-    return Watched(
-        flags, watched.short_amps, watched.given_amps, watched.u_given_amps, watched.expected_v
-    )
+def told_cases(plants: Sequence[Plant]) -> list[Case]:
+    """What it says of plants, at the limit for the share of false flags asked for."""
+    pairs = [told(plant) for plant in plants]
+    limit = limit_for([scored for scored, _ in pairs], -6.0, 12.0)
+    return [
+        Case(scored.plant, replace(watched, flags=flags_of(scored, limit)))
+        for scored, watched in pairs
+    ]

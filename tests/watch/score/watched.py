@@ -1,5 +1,6 @@
 """What a detector says of a plant, in one form for all of them."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -68,3 +69,11 @@ class Case:
             ended_ms = np.inf if flag.ended_ms is None else flag.ended_ms
             standing[:, flag.cell - 1] |= (column >= flag.raised_ms) & (column < ended_ms)
         return standing
+
+
+Cases = Sequence[Case]
+
+
+def usual(cases: Cases) -> list[Case]:
+    """Those of plants that were not made for one measure alone."""
+    return [case for case in cases if not case.plant.scenario.only_steps]

@@ -19,6 +19,18 @@ _BREAK = 7.0
 _LEAST_PART = 5
 
 
+def middle(values: Numbers) -> float:
+    """The median of a few numbers, none of them missing; NumPy's own takes ten times as long."""
+    row = np.sort(values)
+    half = len(row) // 2
+    return float(row[half]) if len(row) % 2 else float((row[half - 1] + row[half]) / 2)
+
+
+def held(values: Numbers, limit: Numbers | float) -> Numbers:
+    """Numbers no further from zero than a limit; NumPy's own `clip` takes three times as long."""
+    return np.minimum(np.maximum(values, -limit), limit)
+
+
 def centre(rest_v: Numbers, noise_v: Numbers, trust: Numbers) -> tuple[float, float]:
     """Centre of the readings less their levels, and its variance.
 
@@ -29,10 +41,10 @@ def centre(rest_v: Numbers, noise_v: Numbers, trust: Numbers) -> tuple[float, fl
     if np.count_nonzero(good) < ENOUGH:
         good = np.ones(len(rest_v), bool)
     rest, noise = rest_v[good], noise_v[good]
-    middle = float(np.median(rest))
+    found = middle(rest)
     base = trust[good] / noise**2 if trust[good].any() else 1.0 / noise**2
     for _ in range(2):
-        z = (rest - middle) / noise
+        z = (rest - found) / noise
         weight = base * np.where(
             z < -_LOW_BEND,
             np.where(z < -_LOW_END, 0.0, _LOW_BEND / np.maximum(-z, _LOW_BEND)),
@@ -41,9 +53,9 @@ def centre(rest_v: Numbers, noise_v: Numbers, trust: Numbers) -> tuple[float, fl
         total = float(weight.sum())
         if total <= 0.0:
             break
-        middle = float((weight * rest).sum()) / total
+        found = float((weight * rest).sum()) / total
     total = float(base.sum()) if total <= 0.0 else total
-    return middle, 1.0 / total
+    return found, 1.0 / total
 
 
 def broken(rest_v: Numbers, noise_v: Numbers) -> int:
@@ -55,7 +67,7 @@ def broken(rest_v: Numbers, noise_v: Numbers) -> int:
     count = len(rest_v)
     if count < 2 * _LEAST_PART:
         return 0
-    z = np.clip((rest_v - np.median(rest_v)) / noise_v, -8.0, 8.0)
+    z = held((rest_v - middle(rest_v)) / noise_v, 8.0)
     sums = np.cumsum(z)[:-1]
     before = np.arange(1, count)
     after = count - before
@@ -67,5 +79,5 @@ def broken(rest_v: Numbers, noise_v: Numbers) -> int:
     if strength[place] < _BREAK or abs(step[place]) < 3.0:
         return 0
     first, last = rest_v[: place + 1], rest_v[place + 1 :]
-    apart = abs(float(np.median(first)) - float(np.median(last)))
-    return place + 1 if apart > 3.0 * float(np.median(noise_v)) else 0
+    apart = abs(middle(first) - middle(last))
+    return place + 1 if apart > 3.0 * middle(noise_v) else 0

@@ -3,6 +3,7 @@
 import numpy as np
 from numpy.typing import NDArray
 
+from server.watch.model.centre import held
 from server.watch.model.facts import Facts
 from server.watch.model.state import CROP_COUNT, CROP_SUM, State
 
@@ -33,15 +34,14 @@ def gather(
     state.reference_v[at] = np.where(new, above_v, state.reference_v[at])
     away = above_v - state.reference_v[at]
     is_settled = known >= _SETTLED
-    clipped = np.where(
-        is_settled, np.clip(away, state.recent_v[at] - limit, state.recent_v[at] + limit), 0.0
-    )
-    recent = state.recent_v[at] + RECENT * healthy * (clipped - state.recent_v[at])
-    state.recent_v[at] = np.where(is_settled, recent, 0.0)
+    before = state.recent_v[at]
+    recent = before + RECENT * healthy * held(away - before, limit)
+    recent = np.where(is_settled, recent, 0.0)
+    state.recent_v[at] = recent
     follow = np.where(is_settled, _FOLLOWS, 1.0 / (known + 1.0)) * healthy
-    state.reference_v[at] += follow * np.clip(away, -2 * limit, 2 * limit)
+    state.reference_v[at] += follow * held(away, 2 * limit)
     crop_var = max(state.shared[CROP_SUM] / (state.shared[CROP_COUNT] + 10.0), 0.0)
     chance = np.sqrt(
         noise_v**2 * (RECENT / (2.0 - RECENT) + 1.0 / np.maximum(known, 1.0)) + 0.5 * crop_var
     )
-    return state.recent_v[at].copy(), chance
+    return recent, chance

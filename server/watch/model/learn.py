@@ -3,6 +3,7 @@
 import numpy as np
 from numpy.typing import NDArray
 
+from server.watch.model.centre import ENOUGH, held, middle
 from server.watch.model.facts import Facts
 from server.watch.model.rounds import Readings
 from server.watch.model.sizes import ONSETS_PER_CROP
@@ -59,8 +60,7 @@ def learn_noise(
     own = state.noise_v[at] + _NOISE_STEP * healthy * (found - state.noise_v[at])
     least = facts.least_noise_v * 0.8
     state.noise_v[at] = np.maximum(own, least)
-    middle = float(np.median(state.noise_v))
-    state.noise_v[at] += 0.02 * (middle - state.noise_v[at])
+    state.noise_v[at] += 0.02 * (middle(state.noise_v) - state.noise_v[at])
 
 
 def learn_crops(
@@ -83,7 +83,7 @@ def learn_crops(
     shared = state.shared
     younger = age[fresh] - state.fresh[at[fresh]]
     limit = _MOST * np.sqrt(var[fresh])
-    found = np.clip(surprise[fresh], -limit, limit)
+    found = held(surprise[fresh], limit)
     kept = _CROPS_KEPT ** int(fresh.sum())
     slope = age_slope_v(state, facts)
     shared[AGE_WEIGHT] = kept * shared[AGE_WEIGHT] + float((younger**2 / var[fresh]).sum())
@@ -127,11 +127,16 @@ def learn_resistance(
     tilt_v: Numbers,
     var: Numbers,
 ) -> None:
-    """How the section's voltage follows its current, and each cell's beside the section's."""
+    """How the section's voltage follows its current, and each cell's beside the section's.
+
+    From a walk, that is: of one cell read twice a round alone is nothing to be learned.
+    """
+    if len(at) < ENOUGH:
+        return
     shared = state.shared
-    amps = float(np.median(readings.amps))
+    amps = middle(readings.amps)
     # What the cells share, at the current of the round: it does not hang on the resistance.
-    now = float(np.median(common)) - shared[RESISTANCE] * (facts.rated_amps - amps)
+    now = middle(common) - shared[RESISTANCE] * (facts.rated_amps - amps)
     before, before_amps = shared[COMMON_V], shared[COMMON_AMPS]
     if np.isfinite(before):
         change = amps - before_amps
@@ -151,5 +156,5 @@ def learn_resistance(
             )
     shared[COMMON_V], shared[COMMON_AMPS] = now, amps
     gain_of = state.tilt_var[at] * tilt_v / var * healthy**2
-    state.tilt[at] -= gain_of * np.clip(surprise, -_MOST * sd, _MOST * sd)
+    state.tilt[at] -= gain_of * held(surprise, _MOST * sd)
     state.tilt_var[at] = state.tilt_var[at] * (1.0 - gain_of * tilt_v) + _TILT_WANDER

@@ -105,6 +105,8 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
         ),
     ):
         is_open = state.raised_ms[at, kind] > 0
+        if not (is_raised | is_open).any():
+            continue
         for spot in np.flatnonzero(is_raised & ~is_open).tolist():
             _raise(
                 state,
@@ -125,6 +127,8 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
     _hold_rate(state, book, outcome, before)
     for kind in (UNREAD, SUSPECT):
         since = state.raised_ms[at, kind]
+        if not since.any():
+            continue
         for spot in np.flatnonzero((since > 0) & (since < at_ms)).tolist():
             _end(state, book, int(at[spot]), kind, int(at_ms[spot]))
 

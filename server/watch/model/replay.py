@@ -136,6 +136,8 @@ def _before_reading(walk: Readings, place: Whole, at_ms: Whole) -> NDArray[np.bo
 
 def _doubt(found: Replayed, doubted: Doubted, start: int, which: NDArray[np.bool_]) -> None:
     """Raise some of what is not believed, from a place on."""
+    if not which.any():
+        return
     for at in (start + np.flatnonzero(which)).tolist():
         place = int(doubted.place[at])
         if place < len(found.state.known):
@@ -146,10 +148,10 @@ def _pull(
     found: Replayed, facts: Facts, pulls: Pulls, start: int, which: NDArray[np.bool_]
 ) -> None:
     """Pull some of the cells that are due from a place on."""
+    if not which.any():
+        return
     at = start + np.flatnonzero(which)
     at = at[pulls.place[at] < facts.cells][::-1]
-    if not len(at):
-        return
     # Of several pulls of one cell the last counts.
     places, last = np.unique(pulls.place[at], return_index=True)
     at_ms = pulls.at_ms[at][last]
@@ -159,6 +161,8 @@ def _pull(
 
 def _miss(found: Replayed, stays: Stays, walk: Readings, end_ms: int, doubted: Whole) -> None:
     cells = len(found.state.known)
+    if len(walk.place) == cells:
+        return
     is_there = (found.state.known > 0) & ~stays.away(cells, end_ms)
     is_read = np.zeros(cells, bool)
     is_read[walk.place] = True

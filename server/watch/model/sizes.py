@@ -33,6 +33,10 @@ class Sizes:
     """How a new short is distributed; adds up to 1."""
     growth: Numbers
     """From each size (row) to each (column) between two rounds; rows add up to 1."""
+    passing: Numbers
+    """The same with no short as the first row and column, shorts that end included."""
+    onset: Numbers
+    """What a short that begins takes from no short and adds to every size; adds up to 0."""
 
 
 @lru_cache(maxsize=1)
@@ -44,4 +48,9 @@ def sizes() -> Sizes:
     for start in range(_SIZES):
         for step, share in _STEPS:
             growth[start, min(max(start + step, 0), _SIZES - 1)] += share
-    return Sizes(shares, prior / prior.sum(), growth)
+    prior /= prior.sum()
+    passing = np.zeros((_SIZES + 1, _SIZES + 1))
+    passing[0, 0] = 1.0
+    passing[1:, 0] = HEALED
+    passing[1:, 1:] = growth * (1.0 - HEALED)
+    return Sizes(shares, prior, growth, passing, np.concatenate(([-1.0], prior)))

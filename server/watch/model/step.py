@@ -14,7 +14,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from server.watch.model.centre import ENOUGH, broken, centre
+from server.watch.model.centre import ENOUGH, broken, centre, held, middle
 from server.watch.model.drift import gather
 from server.watch.model.facts import Facts
 from server.watch.model.learn import (
@@ -26,7 +26,7 @@ from server.watch.model.learn import (
     onsets_per_crop,
 )
 from server.watch.model.rounds import Readings
-from server.watch.model.sizes import HEALED, sizes
+from server.watch.model.sizes import sizes
 from server.watch.model.state import (
     COMMON_STEP_V,
     CROP_COUNT,
@@ -147,7 +147,7 @@ def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome
     healthy = weight[:, 0]
     gain = level_var / var
     state.weight[at] = weight
-    moved = state.level_v[at] + gain * np.clip(z, -_MOST_Z, _MOST_Z) * sd
+    moved = state.level_v[at] + gain * held(z, _MOST_Z) * sd
     state.level_v[at] = moved
     state.level_var[at] = level_var * (1.0 - gain)
     first, first_sd = surprise[:, 0], sd[:, 0]
@@ -183,7 +183,7 @@ def _age(state: State, facts: Facts, readings: Readings) -> Numbers:
     """Age of the deposits in crops; the middle of one where it is not known."""
     hung = state.hung_ms[readings.place]
     age = (readings.at_ms - hung) / facts.crop_ms
-    return np.where(np.isfinite(hung), np.clip(age, 0.0, 2.0), 0.5)
+    return np.where(np.isfinite(hung), np.minimum(np.maximum(age, 0.0), 2.0), 0.5)
 
 
 def _pass_time(
@@ -192,43 +192,33 @@ def _pass_time(
     """Let shorts begin, grow and heal, and levels wander, in the time since the last round."""
     grid = sizes()
     weight, level, var = state.weight[at], state.level_v[at], state.level_var[at]
-    hours = min(max(days, 1.0 / 24.0), 2.0)
-    onset = 1.0 - np.exp(-onsets_per_crop(state) * hours * _DAY_MS / facts.crop_ms)
-    begun = np.minimum(onset * np.clip(2.0 * age, _LEAST_AGE, _MOST_AGE), 0.5)
-    none, some = weight[:, :1], weight[:, 1:]
-    arrived = none * begun[:, None] * grid.prior
-    stayed = (some @ grid.growth) * (1.0 - HEALED)
-    after = np.empty_like(weight)
-    after[:, 1:] = stayed + arrived
-    after[:, 0] = none[:, 0] * (1.0 - begun) + some.sum(axis=1) * HEALED
+    lasts = min(max(days, 1.0 / 24.0), 2.0)
+    onset = 1.0 - np.exp(-onsets_per_crop(state) * lasts * _DAY_MS / facts.crop_ms)
+    begun = np.minimum(onset * np.minimum(np.maximum(2.0 * age, _LEAST_AGE), _MOST_AGE), 0.5)
+    # Under each size: how likely, and the level and its square times that.
+    arrives = np.empty((3, *weight.shape))
+    arrives[0] = weight
+    np.multiply(weight, level, out=arrives[1])
+    np.multiply(weight, var + level**2, out=arrives[2])
+    began = arrives[:, :, :1] * begun[:, None]
+    after = arrives @ grid.passing
+    after += began * grid.onset
+    floor = np.maximum(after[0], 1e-300)
     # The level under each size is that of the mixture which arrives there.
-    square = var + level**2
-    kept = none[:, 0] * (1.0 - begun)
-    floor = np.maximum(after, 1e-300)
-    mean = np.empty_like(level)
-    mean[:, 1:] = ((some * level[:, 1:]) @ grid.growth) * (1.0 - HEALED) + arrived * level[:, :1]
-    mean[:, 0] = kept * level[:, 0] + (some * level[:, 1:]).sum(axis=1) * HEALED
-    mean /= floor
-    second = np.empty_like(level)
-    second[:, 1:] = ((some * square[:, 1:]) @ grid.growth) * (1.0 - HEALED) + arrived * square[
-        :, :1
-    ]
-    second[:, 0] = kept * square[:, 0] + (some * square[:, 1:]).sum(axis=1) * HEALED
-    second /= floor
+    mean = after[1] / floor
     wander = (_WANDER * state.noise_v[at] * _STANDARD) ** 2
-    state.weight[at] = after
+    state.weight[at] = after[0]
     state.level_v[at] = mean
-    state.level_var[at] = np.maximum(second - mean**2, 1e-12) + wander[:, None]
+    state.level_var[at] = np.maximum(after[2] / floor - mean**2, 1e-12) + wander[:, None]
 
 
 def _begin(state: State, at: NDArray[np.int64], referred: Numbers, known: Truths) -> None:
     """Take the spread of the cells from the first round."""
     if len(at) < ENOUGH:
         return
-    middle = np.median(referred)
-    spread = 1.4826 * float(np.median(np.abs(referred - middle)))
+    spread = 1.4826 * middle(np.abs(referred - middle(referred)))
     if spread > 0.0:
-        state.shared[SPREAD_V] = max(spread, float(np.median(state.noise_v)))
+        state.shared[SPREAD_V] = max(spread, middle(state.noise_v))
         state.level_var[state.known == 0] = state.shared[SPREAD_V] ** 2
 
 
@@ -243,7 +233,7 @@ def _common(
         if end - start >= ENOUGH:
             common[cut], var[cut] = centre(rest[cut], spread[cut], trust[cut])
         else:
-            common[cut] = np.median(rest[cut])
+            common[cut] = middle(rest[cut])
             var[cut] = state.shared[COMMON_STEP_V] ** 2
     return common, var
 
@@ -278,7 +268,7 @@ def _weighed(before: Numbers, z: Numbers, sd: Numbers, power: float) -> Numbers:
 def _echo(state: State, at: NDArray[np.int64], z: Numbers, healthy: Numbers) -> None:
     """Gather how much deviations of healthy cells resemble those of the round before."""
     before = state.last_z[at]
-    now = np.clip(z, -_MOST_Z, _MOST_Z)
+    now = held(z, _MOST_Z)
     use = np.isfinite(before) & (healthy > 0.9)
     if use.any():
         fade = 0.98

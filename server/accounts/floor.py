@@ -9,7 +9,7 @@ from server.storage.flag_rows import flags_touching
 from server.storage.flags import Flag
 from server.storage.latest import latest
 from server.storage.plant import House, SectionPlan
-from server.watch.deviations import deviations_now
+from server.watch.deviations import leans_now
 
 _TIERS = ("act", "look")
 
@@ -24,7 +24,7 @@ class FloorCell:
     volts: float | None
     read_ms: int | None
     deviation_v: float | None
-    """Above the section's median at rated current; None without a recent reading under load."""
+    """Above what a healthy cell would read; None without a recent reading under load."""
     times_noise: float | None
     """The deviation in multiples of what is usual in the section."""
     flag_kind: str | None
@@ -51,7 +51,7 @@ def _floor(
 ) -> list[FloorCell]:
     _, states = states_of_cells(session, section, now_ms)
     newest = latest(session, section.cell_ids)
-    leaning = {d.cell: d for d in deviations_now(session, house, section.name, now_ms)}
+    leaning = leans_now(session, house, section.name, now_ms)
     floor = []
     for number, state in states.items():
         cell_id = section.cell_id(number)

@@ -12,10 +12,14 @@ from server.science.statistics.spread import median, robust_sd
 from server.storage.current import bypasses_of, knots_between
 from server.storage.latest import latest
 from server.storage.plant import House, SectionPlan
+from server.watch.newest import last_said
 from server.watch.resistance import resistance_ohm
 
 RECENT_MS = 24 * 3_600_000
 """How old a reading may be and still say how the cell is now."""
+
+_ROUND_MS = 12 * 3_600_000
+"""The longest that a round may take."""
 
 _ENOUGH_CELLS = 4
 """With fewer there is no saying which of them is the odd one."""
@@ -40,6 +44,39 @@ class Deviation:
     def times_noise(self) -> float:
         """How many times the usual the deviation is, with its sign."""
         return self.deviation_v / self.noise_v
+
+
+@dataclass(frozen=True)
+class Lean:
+    """How far a cell is from what a healthy one would read."""
+
+    deviation_v: float
+    times_noise: float
+    """The deviation in multiples of what is usual."""
+
+
+def leans_now(session: Session, house: House, section_name: str, now_ms: int) -> dict[int, Lean]:
+    """How far each cell read within a day is off, by number.
+
+    By what the watch made of its newest round, over the band of what it expected; while it has
+    seen no round of the section within a day, against the median of the section's cells.
+    """
+    said = last_said(session, house.section(section_name), now_ms - RECENT_MS - _ROUND_MS, now_ms)
+    recent = np.flatnonzero(said["at_ms"] > now_ms - RECENT_MS)
+    if not len(recent):
+        found = deviations_now(session, house, section_name, now_ms)
+        return {one.cell: Lean(one.deviation_v, one.times_noise) for one in found}
+    deviation_v = said["deviation_v"][recent].astype(np.float64)
+    band_v = np.maximum(said["band_v"][recent].astype(np.float64), 1e-6)
+    return {
+        cell: Lean(off_v, times)
+        for cell, off_v, times in zip(
+            (recent + 1).tolist(),
+            deviation_v.tolist(),
+            (deviation_v / band_v).tolist(),
+            strict=True,
+        )
+    }
 
 
 def deviations_now(

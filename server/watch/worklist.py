@@ -9,6 +9,7 @@ from server.storage.walk import walking_order
 from server.watch.flags import FlagResult, flags_between
 from server.watch.life import FlagLife
 from server.watch.lives import lives
+from server.watch.newest import Newest, newest_numbers
 
 _TIERS = ("act", "look")
 
@@ -22,6 +23,8 @@ class WorkItem:
     rank: int
     walk: int
     """Place on the walk through its section, from 1; 0 for a cell that is there no more."""
+    newest: Newest
+    """How the cell stands by now; the flag keeps the numbers it was raised by."""
 
 
 def worklist(session: Session, house: House, at_ms: int) -> list[WorkItem]:
@@ -39,19 +42,23 @@ def worklist(session: Session, house: House, at_ms: int) -> list[WorkItem]:
         for flag, life in zip(flags, lives(session, house, flags, at_ms), strict=True)
         if life.state != "ended"
     ]
-    listed.sort(key=lambda pair: _order(pair[0]))
+    newest = newest_numbers(session, house, [flag for flag, _ in listed], at_ms)
+    told = sorted(
+        ((flag, life, by_now) for (flag, life), by_now in zip(listed, newest, strict=True)),
+        key=lambda item: _order(item[0], item[2]),
+    )
     places = {
         name: {cell: place for place, cell in enumerate(_walk(house, name, at_ms), start=1)}
         for name in {flag.section for flag, _ in listed}
     }
     return [
-        WorkItem(flag, life, rank, places[flag.section].get(flag.cell, 0))
-        for rank, (flag, life) in enumerate(listed, start=1)
+        WorkItem(flag, life, rank, places[flag.section].get(flag.cell, 0), by_now)
+        for rank, (flag, life, by_now) in enumerate(told, start=1)
     ]
 
 
-def _order(flag: FlagResult) -> tuple[int, float, int, int]:
-    return _TIERS.index(flag.tier), -(flag.lost_value_per_day or 0.0), flag.raised_ms, flag.cell
+def _order(flag: FlagResult, newest: Newest) -> tuple[int, float, int, int]:
+    return _TIERS.index(flag.tier), -(newest.lost_value_per_day or 0.0), flag.raised_ms, flag.cell
 
 
 def _walk(house: House, section_name: str, at_ms: int) -> tuple[int, ...]:

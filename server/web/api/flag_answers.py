@@ -7,7 +7,7 @@ from server.watch.flags import FlagResult
 from server.watch.life import FlagLife
 from server.watch.worklist import WorkItem
 from server.web.api.account_answers import known
-from server.web.api.schemas_flags import FlagAnswer, WorkItemAnswer
+from server.web.api.schemas_flags import FlagAnswer, NewestAnswer, WorkItemAnswer
 
 
 def flag_answer(flag: FlagResult, life: FlagLife) -> FlagAnswer:
@@ -17,7 +17,21 @@ def flag_answer(flag: FlagResult, life: FlagLife) -> FlagAnswer:
 
 def work_item_answer(item: WorkItem) -> WorkItemAnswer:
     """An item of the work list as the API answers it."""
-    return WorkItemAnswer(**_fields(item.flag, item.life), rank=item.rank, walk=item.walk)
+    newest = item.newest
+    return WorkItemAnswer(
+        **_fields(item.flag, item.life),
+        rank=item.rank,
+        walk=item.walk,
+        newest=NewestAnswer(
+            updated_at=newest.updated_ms,
+            deviation_mv=known(newest.deviation_v, millivolts_from_volts),
+            probability=newest.probability,
+            short_ka=known(newest.short_amps, ka_from_amps),
+            u_short_ka=known(newest.u_short_amps, ka_from_amps),
+            lost_kg_per_day=newest.lost_kg_per_day,
+            lost_value_per_day=newest.lost_value_per_day,
+        ),
+    )
 
 
 def _fields(flag: FlagResult, life: FlagLife) -> dict[str, Any]:
@@ -36,7 +50,6 @@ def _fields(flag: FlagResult, life: FlagLife) -> dict[str, Any]:
         "u_short_ka": known(flag.u_short_amps, ka_from_amps),
         "lost_kg_per_day": flag.lost_kg_per_day,
         "lost_value_per_day": flag.lost_value_per_day,
-        "probability": flag.probability,
         "evidence": flag.evidence,
         "state": life.state,
         "shelved_until": life.shelved_until_ms,

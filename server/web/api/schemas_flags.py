@@ -27,7 +27,6 @@ FLAG_EXAMPLE: JsonDict = {
     "u_short_ka": 0.2,
     "lost_kg_per_day": 24.0,
     "lost_value_per_day": 204.0,
-    "probability": None,
     "evidence": "1.870 V, below the 1.95 V that the section's cells should show.",
     "state": "working",
     "shelved_until": None,
@@ -63,8 +62,6 @@ class FlagAnswer(Answer):
     lost_kg_per_day: float | None
     lost_value_per_day: float | None
     """In the tankhouse's currency."""
-    probability: float | None
-    """Of a short, 0 to 1, as stated when the flag was raised; null for what is no short."""
     evidence: str
     """One sentence that a person can read."""
     state: State
@@ -88,15 +85,48 @@ class Flags(Answer):
     flags: list[FlagAnswer]
 
 
+class NewestAnswer(Answer):
+    """How a flagged cell stands by its newest reading; the flag keeps what it was raised by."""
+
+    updated_at: Moment
+    """Time of that reading."""
+    deviation_mv: float | None
+    probability: float | None
+    """Of a short, 0 to 1."""
+    short_ka: float | None
+    """What a short takes if there is one; null for what is no short."""
+    u_short_ka: float | None
+    lost_kg_per_day: float | None
+    """What is to be expected: less in so far as there may be no short."""
+    lost_value_per_day: float | None
+
+
+NEWEST_EXAMPLE: JsonDict = {
+    "updated_at": "2026-03-01T18:10:00Z",
+    "deviation_mv": -165.0,
+    "probability": None,
+    "short_ka": 0.9,
+    "u_short_ka": 0.2,
+    "lost_kg_per_day": 25.0,
+    "lost_value_per_day": 212.0,
+}
+
+
 class WorkItemAnswer(FlagAnswer):
     """An open flag with its place on the list and on the walk."""
 
-    model_config = ConfigDict(json_schema_extra={"example": {**FLAG_EXAMPLE, "rank": 1, "walk": 7}})
+    model_config = ConfigDict(
+        json_schema_extra={
+            "example": {**FLAG_EXAMPLE, "rank": 1, "walk": 7, "newest": NEWEST_EXAMPLE}
+        }
+    )
 
     rank: int
     """1 is what to do first."""
     walk: int
     """Place along the walk through the section."""
+    newest: NewestAnswer
+    """By this the list is ranked."""
 
 
 class Worklist(Answer):

@@ -8,7 +8,7 @@ NAMES = [
     "section", "cell", "kind", "tier", "raised_at", "ended_at", "raised_by", "volts",
     "expected_volts", "deviation_mv", "short_ka", "u_short_ka", "lost_kg_per_day",
     "lost_value_per_day", "evidence", "state", "shelved_until", "seen_by", "assigned_to",
-    "ended_by", "verdict",
+    "ended_by", "verdict", "probability",
 ]  # fmt: skip
 WEEK = {"from": "2024-02-28", "to": "2024-03-06"}
 
@@ -84,7 +84,7 @@ def test_a_section_that_does_not_exist_is_not_found(section, client):
 def test_the_list_puts_first_what_to_act_on(three_flags, client):
     items = client.get("/api/v1/worklist").json()["items"]
 
-    assert list(items[0]) == [*NAMES, "rank", "walk"]
+    assert list(items[0]) == [*NAMES, "rank", "walk", "newest"]
     assert [(item["cell"], item["rank"], item["walk"]) for item in items] == [(3, 1, 3), (2, 2, 2)]
 
 

@@ -6,9 +6,6 @@ from dataclasses import dataclass
 from sqlalchemy.orm import Session
 
 from server.storage.direct import fetch_rows
-from server.storage.flags import Flag
-
-_PROBABILITY = "probability" if hasattr(Flag, "probability") else "NULL"
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,7 +35,7 @@ def flag_spans(session: Session, from_ms: int, to_ms: int) -> list[FlagSpan]:
         )
         for row in fetch_rows(
             session,
-            f"SELECT cell_id, section_id, kind, tier, raised_ms, ended_ms, {_PROBABILITY}"
+            "SELECT cell_id, section_id, kind, tier, raised_ms, ended_ms, probability"
             " FROM flag WHERE raised_ms < ? AND (ended_ms IS NULL OR ended_ms >= ?)"
             " ORDER BY raised_ms, cell_id, kind",
             (to_ms, from_ms),

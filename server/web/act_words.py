@@ -12,6 +12,8 @@ def act_fault(error: ActRefused) -> str:
     """What is missing or too much, in the reader's language."""
     if error.what == "reason":
         return _("Say why.")
+    if error.what == "act":
+        return _("Nothing was changed: the form did not say what to do.")
     return _("A flag is shelved for a time that lies ahead, seven days at most.")
 
 

@@ -30,7 +30,7 @@ def test_today_is_told_in_spanish(client, session):
 
     said = words_of(client.get("/", headers=SPANISH))
 
-    assert "Hoy Sección Lotes Registrar turno" in said
+    assert "Hoy Sección Lista de trabajo Historial de la vigilancia Lotes" in said
     assert "Electroobtención de cobre · 10 de 10 celdas en servicio" in said
     assert re.search(r"producción de cobre hoy, \d+ t en 7 días", said)
 

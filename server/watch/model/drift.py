@@ -3,17 +3,17 @@
 import numpy as np
 from numpy.typing import NDArray
 
-from server.watch.model.centre import held
+from server.watch.model.centre import ENOUGH, held, middle
 from server.watch.model.facts import Facts
 from server.watch.model.state import CROP_COUNT, CROP_SUM, State
 
 Numbers = NDArray[np.float64]
 
-# Weight of the newest reading in the recent mean (Roberts 1959): it looks back about two days.
-RECENT = 0.15
+# Weight of the newest reading in the recent mean (Roberts 1959): it looks back about three days.
+RECENT = 0.10
 
-# The reference takes the mean of the first readings, then follows over about two months.
-_SETTLED, _FOLLOWS = 20.0, 1.0 / 180.0
+# The reference takes the mean of the first readings, then follows over about four months.
+_SETTLED, _FOLLOWS = 20.0, 1.0 / 360.0
 
 
 def gather(
@@ -40,6 +40,9 @@ def gather(
     state.recent_v[at] = recent
     follow = np.where(is_settled, _FOLLOWS, 1.0 / (known + 1.0)) * healthy
     state.reference_v[at] += follow * held(away, 2 * limit)
+    if np.count_nonzero(is_settled) >= ENOUGH:
+        # What all cells do is no drift of one.
+        recent = recent - middle(recent[is_settled])
     crop_var = max(state.shared[CROP_SUM] / (state.shared[CROP_COUNT] + 10.0), 0.0)
     chance = np.sqrt(
         noise_v**2 * (RECENT / (2.0 - RECENT) + 1.0 / np.maximum(known, 1.0)) + 0.5 * crop_var

@@ -1,4 +1,4 @@
-"""What the readings themselves teach: noise, resistance, the effect of age and of a new crop."""
+"""What the readings themselves teach: noise, resistance, how often shorts begin."""
 
 import numpy as np
 from numpy.typing import NDArray
@@ -8,13 +8,9 @@ from server.watch.model.facts import Facts
 from server.watch.model.rounds import Readings
 from server.watch.model.sizes import ONSETS_PER_CROP
 from server.watch.model.state import (
-    AGE_SUM,
-    AGE_WEIGHT,
     COMMON_AMPS,
     COMMON_STEP_V,
     COMMON_V,
-    CROP_COUNT,
-    CROP_SUM,
     ONSET_COUNT,
     ONSET_SUM,
     RESISTANCE,
@@ -28,8 +24,8 @@ Places = NDArray[np.int64]
 # Share by which a reading moves its cell's noise.
 _NOISE_STEP = 0.03
 
-# How much of what was gathered is kept from round to round, or from pull to pull.
-_CROPS_KEPT, _STEPS_KEPT = 0.99, 0.9
+# How much of what was gathered is kept from round to round.
+_STEPS_KEPT = 0.9
 
 # How much of the shorts seen at pulls is kept from pull to pull, and pulls the trade's figure
 # is worth.
@@ -61,45 +57,6 @@ def learn_noise(
     least = facts.least_noise_v * 0.8
     state.noise_v[at] = np.maximum(own, least)
     state.noise_v[at] += 0.02 * (middle(state.noise_v) - state.noise_v[at])
-
-
-def learn_crops(
-    state: State,
-    facts: Facts,
-    at: Places,
-    age: Numbers,
-    surprise: Numbers,
-    var: Numbers,
-    crop_var: float,
-) -> None:
-    """How far the voltage of a cell moves at a pull, from the first reading after it.
-
-    All cells of a section grow older together, so that only a pull, which makes one of them
-    young, tells what age does; and what the change of age does not explain is the new crop's.
-    """
-    fresh = state.fresh[at] > 0
-    if not fresh.any():
-        return
-    shared = state.shared
-    younger = age[fresh] - state.fresh[at[fresh]]
-    limit = _MOST * np.sqrt(var[fresh])
-    found = held(surprise[fresh], limit)
-    kept = _CROPS_KEPT ** int(fresh.sum())
-    slope = age_slope_v(state, facts)
-    shared[AGE_WEIGHT] = kept * shared[AGE_WEIGHT] + float((younger**2 / var[fresh]).sum())
-    shared[AGE_SUM] = kept * shared[AGE_SUM] + float(
-        (younger * (found + slope * younger) / var[fresh]).sum()
-    )
-    more = float((found**2 - (var[fresh] - crop_var)).sum())
-    shared[CROP_SUM] = kept * shared[CROP_SUM] + more
-    shared[CROP_COUNT] = kept * shared[CROP_COUNT] + float(fresh.sum())
-    state.fresh[at[fresh]] = 0.0
-
-
-def age_slope_v(state: State, facts: Facts) -> float:
-    """By how much a healthy cell's voltage rises over a crop; none until pulls have shown it."""
-    before = 1.0 / facts.spread_v**2
-    return float(state.shared[AGE_SUM] / (state.shared[AGE_WEIGHT] + before))
 
 
 def learn_onsets(state: State, probability: Numbers) -> None:

@@ -36,7 +36,10 @@ class State:
     known: Numbers
     """Readings that the cell's level rests on."""
     fresh: Numbers
-    """From a pull to the first reading after it: the age of the crop that was pulled; else 0."""
+    """While its cathodes are young: the age, in crops, of those pulled before; else 0."""
+    before_v: Numbers
+    """Its level when the last crop was pulled."""
+    before_var: Numbers
     reference_v: Numbers
     """What the cell read above the section over the last weeks."""
     recent_v: Numbers
@@ -82,8 +85,12 @@ class State:
     ONSET_SUM,
     ONSET_COUNT,
     LOOK_ODDS,
-    _SHARED,
+    _YOUTH,
 ) = range(17)
+
+# And of what is learned of deposits in their first hours, part by part.
+YOUTH_SUM, YOUTH_COUNT = slice(_YOUTH, _YOUTH + 4), slice(_YOUTH + 4, _YOUTH + 8)
+_SHARED = _YOUTH + 8
 
 
 def fresh_state(facts: Facts) -> State:
@@ -107,6 +114,8 @@ def fresh_state(facts: Facts) -> State:
         hung_ms=np.full(cells, np.nan),
         known=np.zeros(cells),
         fresh=np.zeros(cells),
+        before_v=np.zeros(cells),
+        before_var=np.zeros(cells),
         reference_v=np.zeros(cells),
         recent_v=np.zeros(cells),
         last_z=np.full(cells, np.nan),

@@ -14,12 +14,11 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from server.watch.model.ages import age_effect_v, age_of, crop_variance, learn_ages
 from server.watch.model.centre import ENOUGH, broken, centre, held, middle
 from server.watch.model.drift import gather
 from server.watch.model.facts import Facts
 from server.watch.model.learn import (
-    age_slope_v,
-    learn_crops,
     learn_noise,
     learn_onsets,
     learn_resistance,
@@ -29,8 +28,6 @@ from server.watch.model.rounds import Readings
 from server.watch.model.sizes import sizes
 from server.watch.model.state import (
     COMMON_STEP_V,
-    CROP_COUNT,
-    CROP_SUM,
     ECHO_COUNT,
     ECHO_SUM,
     RESISTANCE,
@@ -104,16 +101,8 @@ def pulled(state: State, facts: Facts, places: NDArray[np.int64], hung_ms: Numbe
     before = np.clip((hung_ms - state.hung_ms[places]) / facts.crop_ms, 0.0, 2.0)
     is_sound = is_known & np.isfinite(before) & (weight[:, 0] > _SOUND)
     state.fresh[places] = np.where(is_sound, before, 0.0)
+    state.before_v[places], state.before_var[places] = mean, spread
     state.hung_ms[places] = hung_ms
-
-
-def crop_variance(state: State, facts: Facts) -> float:
-    """By how much the level of a cell changes from crop to crop, squared."""
-    first = (0.3 * facts.noise_v) ** 2
-    count = float(state.shared[CROP_COUNT])
-    return max(
-        (float(state.shared[CROP_SUM]) + 10.0 * first) / (count + 10.0), (0.05 * facts.noise_v) ** 2
-    )
 
 
 def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome:
@@ -122,11 +111,11 @@ def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome
     at = readings.place
     shared = state.shared
     resistance = shared[RESISTANCE]
-    age = _age(state, facts, readings)
+    age, youth = age_of(state, facts, at, readings.at_ms)
     _pass_time(state, at, age, facts, days)
     lift = facts.rated_amps - readings.amps
-    slope = age_slope_v(state, facts)
-    referred = readings.volts + resistance * (1.0 + state.tilt[at]) * lift - slope * (age - 0.5)
+    aged_v = age_effect_v(state, facts, age, youth)
+    referred = readings.volts + resistance * (1.0 + state.tilt[at]) * lift - aged_v
     noise_v = state.noise_v[at] * _STANDARD
     tilt_v = resistance * lift
     known = state.known[at] > 0
@@ -152,7 +141,7 @@ def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome
     state.level_var[at] = level_var * (1.0 - gain)
     first, first_sd = surprise[:, 0], sd[:, 0]
     learn_noise(state, facts, at, first, base_var, var[:, 0], healthy)
-    learn_crops(state, facts, at, age, first, var[:, 0], crop_variance(state, facts))
+    learn_ages(state, facts, at, age, youth, referred - common, base_var, healthy)
     learn_resistance(
         state, facts, at, readings, common, first, first_sd, healthy, tilt_v, var[:, 0]
     )
@@ -177,13 +166,6 @@ def temper(state: State) -> float:
         return 1.0
     echo = min(max(float(state.shared[ECHO_SUM]) / count, 0.0), 0.8)
     return (1.0 - echo) / (1.0 + echo)
-
-
-def _age(state: State, facts: Facts, readings: Readings) -> Numbers:
-    """Age of the deposits in crops; the middle of one where it is not known."""
-    hung = state.hung_ms[readings.place]
-    age = (readings.at_ms - hung) / facts.crop_ms
-    return np.where(np.isfinite(hung), np.minimum(np.maximum(age, 0.0), 2.0), 0.5)
 
 
 def _pass_time(

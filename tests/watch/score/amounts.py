@@ -12,6 +12,9 @@ from tests.watch.score.watched import CLAIMS, SECTION, Case
 COVERS = 1.959964
 """Half of a 95 % interval in standard uncertainties."""
 
+FIRST = 10
+"""Items of a work list that are looked at for precision."""
+
 
 def current_error(cases: Sequence[Case]) -> float:
     """Median of |stated / true - 1| of the short current, at flagged readings with a short."""
@@ -101,7 +104,7 @@ def work_list(cases: Sequence[Case]) -> tuple[float, float]:
     act first, then by stated current. Right is an item whose cell has what the flag says. The gain
     of an item is the true short current of its cell, discounted by 1 / log2(1 + rank), over that
     of the best order of the same items; what is not on the list is another measure's matter. Days
-    with fewer than five shorts say little and are left out.
+    with fewer than ten shorts are left out: no list could be right ten times.
     """
     precisions, gains = [], []
     seeds = sorted({case.plant.seed for case in cases})
@@ -118,14 +121,14 @@ def work_list(cases: Sequence[Case]) -> tuple[float, float]:
                 if amps > 0.0
             }
             items = _items(there, at_ms)
-            if len(truth) < 5 or not items:
+            if len(truth) < FIRST or not items:
                 continue
             right = [
                 (item.case, item.cell) in truth
                 or there[item.case].plant.drifts_at(
                     item.cell, at_ms, 1 if item.kind == "drift high" else -1
                 )
-                for item in items[:10]
+                for item in items[:FIRST]
             ]
             precisions.append(float(np.mean(right)))
             found = [truth.get((item.case, item.cell), 0.0) for item in items[:20]]

@@ -30,6 +30,8 @@ class Scored:
     plant: Plant
     scores: Numbers
     over: Callable[[float], float]
+    act: float = np.inf
+    """Score from which a flag says to act."""
 
 
 def standing(scored: Scored, limit: float) -> Truths:
@@ -99,7 +101,7 @@ def flags_of(scored: Scored, limit: float, amps: Numbers | None = None) -> tuple
             Flag(
                 cell=place + 1,
                 kind="short",
-                tier="look",
+                tier="act" if (scored.scores[number:end, place] >= scored.act).any() else "look",
                 raised_ms=int(plant.at_ms[number, place]),
                 ended_ms=None if end is None else _ended_ms(plant, end, place, number),
                 short_amps=None if amps is None else float(amps[number, place]),

@@ -28,6 +28,9 @@ LEAST_HAZARD = 1e-4
 GROWS = ((0, 0.75), (1, 0.13), (2, 0.05), (-1, 0.07))
 """From one size to others between two readings."""
 
+ACT = float(np.log(0.98 / 0.02))
+"""Log odds from which somebody is sent."""
+
 
 def _growth() -> Numbers:
     growth = np.zeros((SHARES.size, SHARES.size))
@@ -73,7 +76,7 @@ def told(plant: Plant) -> tuple[Scored, Watched]:
         between = (mean / short * np.log(SHARES[1] / SHARES[0]) / np.sqrt(12.0)) ** 2
         sd = np.sqrt(np.maximum(square, 0.0) + between) * plant.amps[number]
         spread[number, there] = sd[there]
-    scored = Scored(plant, odds, over=lambda limit: min(limit, 0.0) - 2.0)
+    scored = Scored(plant, odds, over=lambda limit: min(limit, 0.0) - 2.0, act=ACT)
     return scored, Watched((), amps, given, spread, plant.healthy_v)
 
 

@@ -62,6 +62,17 @@ def age_slope_v(state: State, facts: Facts) -> float:
     return float(state.shared[AGE_SUM] / (state.shared[AGE_WEIGHT] + before))
 
 
+def age_variance(state: State, facts: Facts, younger: Numbers) -> Numbers:
+    """How unsure the effect is of growing younger by so many crops, squared."""
+    return np.asarray(younger**2 / (state.shared[AGE_WEIGHT] + 1.0 / facts.spread_v**2))
+
+
+def youth_variance(state: State, facts: Facts, youth: Places) -> Numbers:
+    """How unsure the effect of youth is, squared."""
+    unsure = _YOUTH_BEFORE * facts.noise_v**2 / (state.shared[YOUTH_COUNT] + _YOUTH_BEFORE)
+    return np.asarray(np.append(unsure, 0.0)[youth])
+
+
 def crop_variance(state: State, facts: Facts) -> float:
     """By how much the level of a cell changes from crop to crop, squared."""
     first = (0.3 * facts.noise_v) ** 2

@@ -45,7 +45,7 @@ def facts_of(section: SectionPlan, terms: SectionTerms) -> Facts:
         resistance_ohm=resistance,
         u_resistance_ohm=resistance * relative_u_resistance(section, terms),
         least_noise_v=least_v,
-        noise_v=max(_TYPICAL_NOISE * middle_v, least_v),
+        noise_v=max(_TYPICAL_NOISE * middle_v, terms.meter_accuracy_v),
         spread_v=max(_TYPICAL_SPREAD * middle_v, 2 * least_v),
         crop_ms=crop_days * 86_400_000,
     )

@@ -24,6 +24,9 @@ Places = NDArray[np.int64]
 # Share by which a reading moves its cell's noise.
 _NOISE_STEP = 0.03
 
+# Readings that the first figure of the noise is worth, and how far a cell is drawn to the others.
+_NOISE_BEFORE, _NOISE_ALIKE = 8.0, 0.02
+
 # How much of what was gathered is kept from round to round.
 _STEPS_KEPT = 0.9
 
@@ -53,10 +56,13 @@ def learn_noise(
     """How much the readings of each healthy cell scatter: its own and the section's, half each."""
     share = np.sqrt(base_var / var)
     found = np.minimum(np.abs(surprise) * share, 4.0 * state.noise_v[at])
-    own = state.noise_v[at] + _NOISE_STEP * healthy * (found - state.noise_v[at])
-    least = facts.least_noise_v * 0.8
-    state.noise_v[at] = np.maximum(own, least)
-    state.noise_v[at] += 0.02 * (middle(state.noise_v) - state.noise_v[at])
+    known = state.known[at]
+    share_of_one = np.maximum(_NOISE_STEP, 1.0 / (known + _NOISE_BEFORE)) * healthy
+    own = state.noise_v[at] + share_of_one * (found - state.noise_v[at])
+    state.noise_v[at] = np.maximum(own, facts.least_noise_v * 0.8)
+    # A cell that is little known is taken to scatter as the others do.
+    alike = np.maximum(_NOISE_ALIKE, 0.5 / (1.0 + known / _NOISE_BEFORE))
+    state.noise_v[at] += alike * (middle(state.noise_v[at]) - state.noise_v[at])
 
 
 def learn_onsets(state: State, probability: Numbers) -> None:

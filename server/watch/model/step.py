@@ -14,7 +14,14 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from server.watch.model.ages import age_effect_v, age_of, crop_variance, learn_ages
+from server.watch.model.ages import (
+    age_effect_v,
+    age_of,
+    age_variance,
+    crop_variance,
+    learn_ages,
+    youth_variance,
+)
 from server.watch.model.centre import ENOUGH, broken, centre, held, middle
 from server.watch.model.drift import gather
 from server.watch.model.facts import Facts
@@ -95,10 +102,10 @@ def pulled(state: State, facts: Facts, places: NDArray[np.int64], hung_ms: Numbe
     state.weight[places] = 0.0
     state.weight[places, 0] = 1.0
     state.level_v[places] = mean[:, None]
-    state.level_var[places] = np.where(is_known, spread + crop_var, state.shared[SPREAD_V] ** 2)[
-        :, None
-    ]
     before = np.clip((hung_ms - state.hung_ms[places]) / facts.crop_ms, 0.0, 2.0)
+    unsure = crop_var + age_variance(state, facts, np.where(np.isfinite(before), before, 0.0))
+    level_var = np.where(is_known, spread + unsure, state.shared[SPREAD_V] ** 2)
+    state.level_var[places] = level_var[:, None]
     is_sound = is_known & np.isfinite(before) & (weight[:, 0] > _SOUND)
     state.fresh[places] = np.where(is_sound, before, 0.0)
     state.before_v[places], state.before_var[places] = mean, spread
@@ -128,6 +135,7 @@ def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome
     drops = resistance * facts.rated_amps * np.concatenate(([0.0], grid.shares))
     level_var = state.level_var[at]
     base_var = noise_v**2 + common_var + tilt_v**2 * state.tilt_var[at]
+    base_var += youth_variance(state, facts, youth)
     var = level_var + base_var[:, None]
     sd = np.sqrt(var)
     surprise = (referred - common)[:, None] - state.level_v[at] + drops

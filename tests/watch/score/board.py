@@ -185,8 +185,8 @@ def as_markdown(of: Board, day: str, plants: int, readings: int) -> str:
     """The scoreboard as it stands in DEVELOPERS.md."""
     heads = " | ".join(of.processes)
     lines = [
-        f"Found on {day}, on {plants} made-up sections and {readings:,} readings. A figure that misses",
-        "what is wanted is in bold; in brackets stands what the told detector reaches.",
+        f"Found on {day}, on {plants} made-up sections and {readings:,} readings. A figure that",
+        "misses what is wanted is in bold; in brackets stands what the told detector reaches.",
         "",
         f"| measure | wanted | {heads} |",
         "|---|---|" + "---|" * len(of.processes),
@@ -199,8 +199,8 @@ def as_markdown(of: Board, day: str, plants: int, readings: int) -> str:
         lines.append(f"| {line.measure} | {line.wanted} | {found} |")
     lines += [
         "",
-        "Share of all short ampere-hours that passed while the cell was flagged as short; in brackets",
-        "false flags of shorts per 1,000 readings:",
+        "Share of all short ampere-hours that passed while the cell was flagged as short; in",
+        "brackets false flags of shorts per 1,000 readings:",
         "",
         f"| detector | {heads} |",
         "|---|" + "---|" * len(of.processes),

@@ -38,8 +38,7 @@ def ledger(
                 shorts.charge_c,
                 shorts.charge_c / cell_c,
                 u_shorts,
-                "what the watch expects of each cell from its readings, over"
-                f" {watched_pct:.0f} % of the charge",
+                f"expected by the watch, from readings for {watched_pct:.0f} % of the charge",
             )
         )
         u_rest = None if u_rest is None else root_sum(u_rest, u_shorts)

@@ -22,6 +22,12 @@ def float32(values: ArrayLike) -> TypedArray:
     return _packed(np.ascontiguousarray(values, dtype="<f4"), "f4")
 
 
+def table32(values: ArrayLike) -> TypedArray:
+    """A table of values, row by row: four bytes each, NaN where nothing is."""
+    table = np.ascontiguousarray(values, dtype="<f4")
+    return _packed(table, "f4") | {"shape": ",".join(str(side) for side in table.shape)}
+
+
 def float64(values: ArrayLike) -> TypedArray:
     """Values that need all their digits, such as milliseconds since 1970."""
     return _packed(np.ascontiguousarray(values, dtype="<f8"), "f8")

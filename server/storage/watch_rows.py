@@ -71,6 +71,32 @@ def rounds_between(
     ]
 
 
+def has_rounds(session: Session, section_id: int, from_ms: int, to_ms: int) -> bool:
+    """Whether any round began in [from_ms, to_ms)."""
+    rows = fetch_rows(
+        session,
+        "SELECT 1 FROM watched_round WHERE section_id = ? AND started_ms >= ?"
+        " AND started_ms < ? LIMIT 1",
+        (section_id, from_ms, to_ms),
+    )
+    return bool(rows)
+
+
+def rounds_of_cell(
+    session: Session, section_id: int, place: int, from_ms: int, to_ms: int
+) -> NDArray[np.void]:
+    """What the rounds that began in [from_ms, to_ms) said of one cell, `place` from 0; by time."""
+    size = OF_A_CELL.itemsize
+    rows = fetch_rows(
+        session,
+        f"SELECT substr(cells, {int(place) * size + 1}, {size}) FROM watched_round"
+        " WHERE section_id = ? AND started_ms >= ? AND started_ms < ? ORDER BY started_ms",
+        (section_id, from_ms, to_ms),
+    )
+    said = np.frombuffer(b"".join(row[0] for row in rows), OF_A_CELL)
+    return said[said["at_ms"] > 0]
+
+
 def last_round(
     session: Session, section_id: int, until_ms: int
 ) -> tuple[int, int, float, NDArray[np.void]] | None:

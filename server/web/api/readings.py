@@ -1,11 +1,15 @@
 """Voltages of the cells, as they are read and as they are asked for."""
 
+from typing import Annotated, Any, Literal
+
 import numpy as np
+from fastapi import Query
 from numpy.typing import NDArray
 from starlette.responses import Response
 
 from server.accounts.cell import CellSeries, cell_series
 from server.figures.thinning import points_kept
+from server.watch.expected import expected_at
 from server.web.api.parameters import (
     CellNumber,
     FromTime,
@@ -26,6 +30,14 @@ router = resource("records")
 
 _FOR_DOUBTED = 4
 """One place in so many is kept for doubted readings, whose extremes are not the cell's."""
+
+
+Watch = Annotated[
+    Literal["yes", "no"],
+    Query(
+        description="yes: also what the watch made of each reading, `expected` and `probability`."
+    ),
+]
 
 
 @router.post(
@@ -56,19 +68,23 @@ def get_readings(
     to_time: ToTime,
     points: Points = None,
     known_at: KnownTime = None,
+    watch: Watch = "no",
 ) -> Response:
     """Answer the readings that count, by time; doubted ones are among them and marked."""
     from_ms, to_ms = span_of(from_time, to_time, house)
     known_ms = moment_of(known_at, house, "query.known_at") if known_at else None
     series = cell_series(db, house, section, cell, from_ms, to_ms, known_ms)
     kept = kept_of(series, points) if points else slice(None)
-    return as_json(
-        {
-            "at": all_written(series.at_ms[kept]),
-            "volts": np.ascontiguousarray(series.volts[kept]),
-            "suspect": (series.suspect[kept] != 0).tolist(),
-        }
-    )
+    answer: dict[str, Any] = {
+        "at": all_written(series.at_ms[kept]),
+        "volts": np.ascontiguousarray(series.volts[kept]),
+        "suspect": (series.suspect[kept] != 0).tolist(),
+    }
+    if watch == "yes":
+        made = expected_at(db, house.section(section), cell, series.at_ms)
+        answer["expected"] = np.round(made.expected_v[kept], 5)
+        answer["probability"] = np.round(made.probability[kept], 4)
+    return as_json(answer)
 
 
 def kept_of(series: CellSeries, points: int) -> NDArray[np.intp]:

@@ -119,6 +119,10 @@ class ReadingSeries(Answer):
     volts: list[float]
     suspect: list[bool]
     """Whether the reading is doubted, and so left out of the figures."""
+    expected: list[float | None] = []
+    """With `watch=yes` only: what the cell would have read if it were healthy, V."""
+    probability: list[float | None] = []
+    """With `watch=yes` only: of a short, 0 to 1."""
 
 
 class HeldAnswer(Answer):

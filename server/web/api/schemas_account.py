@@ -163,7 +163,7 @@ class AccountAnswer(Answer):
                         "kah": 14930.0,
                         "share_pct": 1.3,
                         "u_share_pct": 0.15,
-                        "basis": "what the watch expects of each cell from its readings",
+                        "basis": "expected by the watch, from readings for 98 % of the charge",
                     },
                     {
                         "item": "not explained",

@@ -10,9 +10,7 @@ from server.web.i18n import ngettext
 
 _OF_LOTS = re.compile(r"(\d+) lots, net less starters")
 
-_OF_SHORTS = re.compile(
-    r"what the watch expects of each cell from its readings, over (\d+) % of the charge"
-)
+_OF_SHORTS = re.compile(r"expected by the watch, from readings for (\d+) % of the charge")
 
 
 def account_words(text: str) -> str:
@@ -25,9 +23,9 @@ def account_words(text: str) -> str:
         ) % {"num": lots}
     of_shorts = _OF_SHORTS.fullmatch(text)
     if of_shorts:
-        return _(
-            "what the watch expects of each cell from its readings, over %(pct)s %% of the charge"
-        ) % {"pct": of_shorts[1]}
+        return _("expected by the watch, from readings for %(pct)s %% of the charge") % {
+            "pct": of_shorts[1]
+        }
     return {**_formulas(), **_inputs(), **_sources()}.get(text, text)
 
 

@@ -19,6 +19,7 @@ from server.intake.suspicion import confirm
 from server.storage.errors import Conflict
 from server.storage.plant import House
 from server.storage.recorded import last_recorded_ms
+from server.watch.expected import expected_at
 from server.watch.flags import flags_between
 from server.web.dependencies import (
     DbSession,
@@ -195,6 +196,8 @@ def _view(
     where = (session, house, section_name, number, period.from_ms, period.to_ms)
     series = cell_series(*where, known_ms)
     referred_v = at_rated_current(session, section, series.at_ms, series.volts)
+    # What the watch expected rests on all that is known by now.
+    healthy = None if known_ms else expected_at(session, section, number, series.at_ms)
     events = cell_events(*where)
     flags = [
         flag
@@ -233,7 +236,7 @@ def _view(
         "period": period,
         "known_ms": known_ms,
         "known": asked.known or "",
-        "voltage": voltage_figure(window, series, referred_v, terms, flags, out),
+        "voltage": voltage_figure(window, series, referred_v, terms, flags, out, healthy),
         "crops_figure": crops_figure(window, crops, terms.target_current_efficiency),
         "crops": crops,
         "flags": list(reversed(flags)),

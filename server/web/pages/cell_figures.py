@@ -4,6 +4,7 @@ from collections.abc import Sequence
 from typing import Literal
 
 import numpy as np
+from numpy.typing import NDArray
 
 from server.accounts.cell import CellSeries
 from server.accounts.periods import DAY_MS
@@ -12,6 +13,7 @@ from server.figures.layout import Axis, Band, Figure, Outage, Target, Window
 from server.figures.trends import Line, Marks, Numbers, trend
 from server.science.units import percent_from_share
 from server.storage.plant import SectionTerms
+from server.watch.expected import Expected
 from server.watch.flags import FlagResult
 from server.web.filters import flag_direction, flag_words, number
 from server.web.i18n import gettext as _
@@ -28,8 +30,12 @@ def voltage_figure(
     terms: SectionTerms,
     flags: Sequence[FlagResult],
     outages: Sequence[Outage],
+    expected: Expected | None = None,
 ) -> Figure | None:
-    """Voltage at rated current as a line, as read as points, with flags and doubts marked."""
+    """Voltage at rated current as a line, as read as points, with flags and doubts marked.
+
+    Beside it what a healthy cell would have read, with its standard uncertainty.
+    """
     if not len(series.at_ms):
         return None
     # A voltage without load says nothing of the cell at work, and would flatten all the others.
@@ -37,8 +43,10 @@ def voltage_figure(
     at_ms, read_v, lined_v = series.at_ms[believed], series.volts[believed], referred_v[believed]
     lines = [
         Line(_("as read"), at_ms, read_v, shape="points", quiet=True),
-        Line(_("at rated current"), at_ms, lined_v, gap_ms=_GAP_MS),
+        Line(_("this cell"), at_ms, lined_v, gap_ms=_GAP_MS),
     ]
+    if expected is not None and np.isfinite(expected.expected_v[believed]).any():
+        lines.insert(1, _healthy(expected, believed, at_ms, lined_v - read_v))
     return trend(
         window,
         Axis(_("Cell voltage"), "V", 3),
@@ -47,6 +55,24 @@ def voltage_figure(
         marks=[*_raised(flags, at_ms, lined_v), *_doubted(series, terms, read_v)],
         outages=outages,
         height=280,
+    )
+
+
+def _healthy(
+    expected: Expected,
+    believed: NDArray[np.bool_],
+    at_ms: NDArray[np.int64],
+    to_rated_v: Numbers,
+) -> Line:
+    """What a healthy cell would have read, at rated current like the line beside it."""
+    known = np.isfinite(expected.expected_v[believed])
+    return Line(
+        _("if healthy"),
+        at_ms[known],
+        (expected.expected_v[believed] + to_rated_v)[known],
+        u_values=expected.band_v[believed][known],
+        gap_ms=_GAP_MS,
+        quiet=True,
     )
 
 

@@ -20,6 +20,7 @@ from server.figures.floor import NARROW_LINE, floor
 from server.settings import Settings
 from server.storage.plant import House
 from server.storage.recorded import last_recorded_ms
+from server.storage.watch_rows import has_rounds
 from server.watch.worklist import worklist
 from server.web.dependencies import DbSession, Now, Reader, ThisHouse, ThisSite
 from server.web.filters import no_data, number
@@ -83,6 +84,7 @@ def _view(
     outages = section_outages(session, plan, *span)
     rows = plan.terms_at(now_ms).rows
     trends = section_trends(days, steps, outages, account, house.time_zone)
+    has_carpet = has_rounds(session, plan.id, *span)
     flags = [w for w in worklist(session, house, now_ms) if w.flag.section == section_name]
     return {
         "standing": section_standing(session, house, section_name, now_ms, settings.max_hold_ms),
@@ -98,7 +100,8 @@ def _view(
         "is_energy_high": is_energy_high(account),
         "waterfall_j_kg": sum(item.j_kg for item in account.waterfall),
         "made_kg": account.period.made_kg if account.charge.cell_c > 0 else None,
-        "has_figures": any(trend.figure for trend in trends),
+        "has_figures": has_carpet or any(trend.figure for trend in trends),
+        "has_carpet": has_carpet,
         "trends": trends[:-1],
         "current": trends[-1],
         "days": list(reversed(days)),

@@ -7,7 +7,15 @@ import pytest
 
 from server.accounts.cell import CellSeries
 from server.web.api.readings import kept_of
-from tests.factories import DAY_MS, HOUR_MS, NOW_MS, make_current, make_readings, make_section
+from tests.factories import (
+    DAY_MS,
+    HOUR_MS,
+    NOW_MS,
+    keep_books,
+    make_current,
+    make_readings,
+    make_section,
+)
 
 NOW = "2024-03-05T12:00:00Z"
 WEEK = {"from": "2024-02-28", "to": "2024-03-06"}
@@ -279,3 +287,17 @@ def test_senseless_points_are_refused(section, client):
 
         assert answer.status_code == 422
         assert answer.json()["errors"][0]["where"] == "query.points"
+
+
+def test_what_the_watch_expected_is_answered_when_asked_for(ten_days, session, client):
+    keep_books(session)
+    asked = {"section": "A", "cell": 3, **WEEK}
+
+    plain = client.get("/api/v1/readings", params=asked).json()
+    answer = client.get("/api/v1/readings", params=asked | {"watch": "yes"}).json()
+
+    assert set(plain) == {"at", "volts", "suspect"}
+    assert plain["volts"] == answer["volts"]
+    assert len(answer["expected"]) == len(answer["probability"]) == len(answer["at"])
+    assert answer["expected"] == pytest.approx([2.0] * len(answer["at"]), abs=0.02)
+    assert all(0 <= share <= 1 for share in answer["probability"])

@@ -98,7 +98,7 @@ def test_a_section_without_records_shows_empty_figures_and_no_fault(client, sess
     page = client.get("/sections/EW1")
 
     assert page.status_code == 200
-    assert page.text.count("There is nothing to draw in this period.") == 5
+    assert page.text.count("There is nothing to draw in this period.") == 6
     assert "No current is recorded for this time." in page.text
     assert "No charge passed in this period." in page.text
 

@@ -1,0 +1,145 @@
+"""The carpet of a section: cells by rounds, each reading shaded by how far it was off.
+
+What is as expected is grey, so that a pattern stands out: a row, a bay, a shift, a reader.
+"""
+
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from server.figures.encode import float64, offsets_ms, table32
+from server.figures.layout import HIGH, LINE, LOW, PALE, Axis, Figure, Window, layout
+
+FULL_SHADE = 6.0
+"""Bands by which a reading is off where the shade is at its fullest."""
+
+_CALM = 2.0
+"""Up to here all is the same grey."""
+
+_LONGEST_MS = 12 * 3_600_000
+"""A column is no wider than this; what follows until the next round is blank."""
+
+_CELL_PX = 4.0
+_LEAST_PX, _MOST_PX = 150, 460
+_MARGIN_PX = 56
+
+
+@dataclass(frozen=True)
+class CarpetWords:
+    """Words of a carpet in the reader's language."""
+
+    cell: str
+    bands: str
+    """What the shade counts, after its number."""
+
+
+def carpet_figure(
+    window: Window,
+    started_ms: NDArray[np.int64],
+    deviation_mv: NDArray[np.float32],
+    times_band: NDArray[np.float32],
+    rows: int,
+    words: CarpetWords,
+) -> Figure:
+    """Cells by columns of rounds as a dictionary that Plotly draws.
+
+    Arrays are cells by rounds, NaN where a cell was not read; that stays blank. Where the cells
+    stand in several rows a thin line parts them.
+    """
+    cells = max(len(times_band), 1)
+    edges_ms, columns = _columns(started_ms, window.to_ms)
+    wall_ms = edges_ms + offsets_ms(edges_ms, window.zone)
+    ends = cells + 0.5, 0.5
+    drawn = layout(window, Axis(words.cell, "", 0), (0.5, cells + 0.5), height=_height(cells))
+    per_row = -(-cells // max(rows, 1))
+    drawn["hovermode"] = "closest"
+    drawn["xaxis"] |= {"showspikes": False}
+    drawn["yaxis"] = {
+        "range": list(ends),
+        "fixedrange": True,
+        "showgrid": False,
+        "zeroline": False,
+        "showline": False,
+        "ticks": "",
+        "tickmode": "array",
+        "tickvals": _ticks(cells),
+        "ticklabelstandoff": 4,
+    }
+    drawn["shapes"] = [_parting(row * per_row + 0.5) for row in range(1, rows) if per_row < cells]
+    drawn["annotations"] = [one | {"text": words.cell} for one in drawn["annotations"]]
+    return {
+        "data": [
+            {
+                "type": "heatmap",
+                "x": float64(wall_ms),
+                "y": list(range(1, cells + 1)),
+                "z": table32(_spread(times_band, columns)),
+                "customdata": table32(_spread(np.round(deviation_mv, 1), columns)),
+                "zmin": -FULL_SHADE,
+                "zmax": FULL_SHADE,
+                "colorscale": _shades(),
+                "showscale": False,
+                "hoverongaps": False,
+                "hovertemplate": f"{words.cell} %{{y}}, %{{x|%-d %b %H:%M}}"
+                f"<br>%{{customdata:.0f}} mV, %{{z:.1f}} {words.bands}<extra></extra>",
+            }
+        ],
+        "layout": drawn,
+    }
+
+
+def _columns(
+    started_ms: NDArray[np.int64], to_ms: int
+) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    """Edges of the columns, and of each the round that it shows; -1 for a blank one."""
+    follows = np.append(started_ms, to_ms)[1:]
+    ends = np.minimum(started_ms + _LONGEST_MS, follows)
+    edges: list[int] = []
+    shown: list[int] = []
+    for nth, (start, end, following) in enumerate(
+        zip(started_ms.tolist(), ends.tolist(), follows.tolist(), strict=True)
+    ):
+        edges.append(start)
+        shown.append(nth)
+        if end < following:
+            edges.append(end)
+            shown.append(-1)
+    last_ms = max([to_ms, *(edge + 1 for edge in edges[-1:])])
+    return np.array([*edges, last_ms], np.int64), np.array(shown, np.int64)
+
+
+def _spread(values: NDArray[np.float32], columns: NDArray[np.int64]) -> NDArray[np.float32]:
+    """The columns as they are drawn, the blank ones among them."""
+    blank = np.full((len(values), 1), np.nan, np.float32)
+    return np.concatenate((values, blank), axis=1)[:, columns]
+
+
+def _shades() -> list[list[Any]]:
+    """From what reads low over grey to what reads high; tokens, which the script exchanges."""
+    calm = 0.5 * _CALM / FULL_SHADE
+    return [[0.0, LOW], [0.5 - calm, PALE], [0.5 + calm, PALE], [1.0, HIGH]]
+
+
+def _height(cells: int) -> int:
+    return round(min(max(cells * _CELL_PX, _LEAST_PX), _MOST_PX)) + _MARGIN_PX
+
+
+def _ticks(cells: int) -> list[int]:
+    """The first cell, and round numbers after it."""
+    step = next((size for size in (5, 10, 20, 50, 100, 200) if cells / size <= 10), 500)
+    return [1, *range(step, cells + 1, step)]
+
+
+def _parting(y: float) -> dict[str, Any]:
+    return {
+        "type": "line",
+        "xref": "paper",
+        "x0": 0,
+        "x1": 1,
+        "yref": "y",
+        "y0": y,
+        "y1": y,
+        "line": {"color": LINE, "width": 1},
+    }

@@ -6,13 +6,13 @@ from numpy.typing import NDArray
 from server.watch.model.centre import ENOUGH, held, middle
 from server.watch.model.facts import Facts
 from server.watch.model.rounds import Readings
-from server.watch.model.sizes import ONSETS_PER_CROP
+from server.watch.model.sizes import ONSETS_PER_CROP, sizes
 from server.watch.model.state import (
     COMMON_AMPS,
     COMMON_STEP_V,
     COMMON_V,
     ONSET_COUNT,
-    ONSET_SUM,
+    ONSET_SUMS,
     RESISTANCE,
     RESISTANCE_VAR,
     State,
@@ -65,17 +65,21 @@ def learn_noise(
     state.noise_v[at] += alike * (middle(state.noise_v[at]) - state.noise_v[at])
 
 
-def learn_onsets(state: State, probability: Numbers) -> None:
-    """How many shorts begin in a crop, from how many cells had one when they were pulled."""
-    kept = _ONSETS_KEPT ** len(probability)
-    state.shared[ONSET_SUM] = kept * state.shared[ONSET_SUM] + float(probability.sum())
-    state.shared[ONSET_COUNT] = kept * state.shared[ONSET_COUNT] + float(len(probability))
+def learn_onsets(state: State, some: Numbers) -> None:
+    """How many shorts of each size begin in a crop, from the cells that had one when pulled.
+
+    Size by size, so that many large shorts do not make small ones likely that no reading shows.
+    """
+    kept = _ONSETS_KEPT ** len(some)
+    state.shared[ONSET_SUMS] = kept * state.shared[ONSET_SUMS] + some.sum(axis=0)
+    state.shared[ONSET_COUNT] = kept * state.shared[ONSET_COUNT] + float(len(some))
 
 
-def onsets_per_crop(state: State) -> float:
-    """Shorts that begin in a crop of one cell; the trade's figure until crops have been seen."""
-    seen, count = state.shared[ONSET_SUM], state.shared[ONSET_COUNT]
-    return float((seen + _ONSETS_BEFORE * ONSETS_PER_CROP) / (count + _ONSETS_BEFORE))
+def onsets_per_crop(state: State) -> Numbers:
+    """Shorts of each size that begin in a crop; the trade's figure until crops have been seen."""
+    first = _ONSETS_BEFORE * ONSETS_PER_CROP * sizes().prior
+    seen = state.shared[ONSET_SUMS] + first
+    return np.asarray(seen / (state.shared[ONSET_COUNT] + _ONSETS_BEFORE))
 
 
 def learn_resistance(

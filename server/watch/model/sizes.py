@@ -35,8 +35,6 @@ class Sizes:
     """From each size (row) to each (column) between two rounds; rows add up to 1."""
     passing: Numbers
     """The same with no short as the first row and column, shorts that end included."""
-    onset: Numbers
-    """What a short that begins takes from no short and adds to every size; adds up to 0."""
 
 
 @lru_cache(maxsize=1)
@@ -53,4 +51,4 @@ def sizes() -> Sizes:
     passing[0, 0] = 1.0
     passing[1:, 0] = HEALED
     passing[1:, 1:] = growth * (1.0 - HEALED)
-    return Sizes(shares, prior, growth, passing, np.concatenate(([-1.0], prior)))
+    return Sizes(shares, prior, growth, passing)

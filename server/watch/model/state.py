@@ -82,15 +82,17 @@ class State:
     ECHO_SUM,
     ECHO_COUNT,
     SPREAD_V,
-    ONSET_SUM,
     ONSET_COUNT,
     LOOK_ODDS,
     _YOUTH,
-) = range(17)
+) = range(16)
 
 # And of what is learned of deposits in their first hours, part by part.
 YOUTH_SUM, YOUTH_COUNT = slice(_YOUTH, _YOUTH + 4), slice(_YOUTH + 4, _YOUTH + 8)
-_SHARED = _YOUTH + 8
+
+# And of shorts seen at pulls, size by size.
+ONSET_SUMS = slice(_YOUTH + 8, _YOUTH + 8 + len(sizes().shares))
+_SHARED = ONSET_SUMS.stop
 
 
 def fresh_state(facts: Facts) -> State:

@@ -97,7 +97,7 @@ def pulled(state: State, facts: Facts, places: NDArray[np.int64], hung_ms: Numbe
     mean = (weight * level).sum(axis=1)
     spread = (weight * (var + (level - mean[:, None]) ** 2)).sum(axis=1)
     is_known = state.known[places] > 0
-    learn_onsets(state, 1.0 - weight[is_known, 0])
+    learn_onsets(state, weight[is_known, 1:])
     crop_var = crop_variance(state, facts)
     state.weight[places] = 0.0
     state.weight[places, 0] = 1.0
@@ -183,7 +183,9 @@ def _pass_time(
     grid = sizes()
     weight, level, var = state.weight[at], state.level_v[at], state.level_var[at]
     lasts = min(max(days, 1.0 / 24.0), 2.0)
-    onset = 1.0 - np.exp(-onsets_per_crop(state) * lasts * _DAY_MS / facts.crop_ms)
+    begin = onsets_per_crop(state)
+    onset = 1.0 - np.exp(-begin.sum() * lasts * _DAY_MS / facts.crop_ms)
+    into = np.concatenate(([-1.0], begin / begin.sum()))
     begun = np.minimum(onset * np.minimum(np.maximum(2.0 * age, _LEAST_AGE), _MOST_AGE), 0.5)
     # Under each size: how likely, and the level and its square times that.
     arrives = np.empty((3, *weight.shape))
@@ -192,7 +194,7 @@ def _pass_time(
     np.multiply(weight, var + level**2, out=arrives[2])
     began = arrives[:, :, :1] * begun[:, None]
     after = arrives @ grid.passing
-    after += began * grid.onset
+    after += began * into
     floor = np.maximum(after[0], 1e-300)
     # The level under each size is that of the mixture which arrives there.
     mean = after[1] / floor

@@ -16,7 +16,7 @@ from server.watch.life import DAY_MS
 from server.watch.worklist import WorkItem
 
 ON_ONE_PAGE = 40
-ON_ONE_SHEET = 12
+ON_ONE_SHEET = 11
 """Items that are printed: what one sheet holds with the cautions."""
 
 _TREND_MS = 30 * DAY_MS

@@ -2,7 +2,9 @@
 
 Target 10, standard deviation 1, the last ten values from a mean of 11. Looked up: the values, the
 upper sums 1 to 29 and the second lower sum in several public test suites that quote the book. The
-other lower sums and the EWMA are worked out here by hand.
+other lower sums and the EWMA are worked out here by hand. The book says in its text that the EWMA
+signals at the 28th value (from memory); that is not met: by its own values the average there is
+10.573, below the limit of 10.619, and passes it with the 29th, 10.647.
 """
 
 import numpy as np
@@ -62,4 +64,5 @@ def test_ewma_with_opening_limits():
     assert chart.averages[:, 0] == pytest.approx(by_sum, abs=1e-9)
     assert upper[0] == pytest.approx(10.27)
     assert upper[28] == pytest.approx(10.0 + 2.7 * (0.1 / 1.9 * (1.0 - 0.9**58)) ** 0.5)
+    assert chart.averages[27:29, 0] == pytest.approx([10.573, 10.647], abs=0.0005)
     assert int(np.argmax(chart.averages[:, 0] > upper)) + 1 == 29

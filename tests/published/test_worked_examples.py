@@ -7,7 +7,6 @@ kWh/t" for copper is looked up (IEEE Trans. Ind. Appl. 46 (2010) 1264; JOM 2024)
 
 import pytest
 
-from server.science.statistics.averages import hold_means
 from server.science.constants import COBALT, COPPER, NICKEL
 from server.science.faraday import (
     current_density_a_m2,
@@ -17,6 +16,7 @@ from server.science.faraday import (
     specific_energy_from_volts_j_kg,
     specific_energy_j_kg,
 )
+from server.science.statistics.averages import hold_means
 from server.science.stoichiometry import sulfuric_acid_made_kg
 from server.science.units import kwh_t_from_j_kg
 

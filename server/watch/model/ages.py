@@ -30,6 +30,9 @@ _YOUTH_H = np.array([2.0, 5.0, 9.0, 16.0])
 # Readings that stand for no effect of youth until others have been seen.
 _YOUTH_BEFORE = 4.0
 
+# Usual crops after which cathodes have been pulled, though nobody wrote it down.
+OVERDUE = 3.0
+
 # How much of what was gathered is kept from pull to pull.
 _KEPT = 0.99
 
@@ -43,7 +46,7 @@ _SOUND = 0.8
 def age_of(state: State, facts: Facts, at: Places, at_ms: Places) -> tuple[Numbers, Places]:
     """Age of each deposit in crops, and its part of youth; half a crop where nothing is known."""
     lasts_ms = at_ms - state.hung_ms[at]
-    is_known = np.isfinite(lasts_ms)
+    is_known = lasts_ms <= OVERDUE * facts.crop_ms
     age = np.where(is_known, np.minimum(np.maximum(lasts_ms / facts.crop_ms, 0.0), 2.0), 0.5)
     hours = np.where(is_known, lasts_ms / _HOUR_MS, _YOUTH_H[-1])
     return age, np.searchsorted(_YOUTH_H, hours, side="right")

@@ -10,13 +10,13 @@ Truths = NDArray[np.bool_]
 ENOUGH = 4
 
 # Where the weight of a reading begins to fall, and below which it has none, in noises.
-_LOW_BEND, _LOW_END, _HIGH_BEND = 1.5, 3.0, 2.5
+_LOW_BEND, _LOW_END, _HIGH_BEND, _HIGH_END = 1.5, 3.0, 2.5, 8.0
 
 # Noises by which two parts of a round must differ, over all their readings, to be kept apart.
 _BREAK = 7.0
 
-# Readings on either side of a break.
-_LEAST_PART = 5
+# Readings on either side of a break, and the share of them that must go with their side.
+_LEAST_PART, _AGREE = 5, 0.7
 
 
 def middle(values: Numbers) -> float:
@@ -48,7 +48,7 @@ def centre(rest_v: Numbers, noise_v: Numbers, trust: Numbers) -> tuple[float, fl
         weight = base * np.where(
             z < -_LOW_BEND,
             np.where(z < -_LOW_END, 0.0, _LOW_BEND / np.maximum(-z, _LOW_BEND)),
-            _HIGH_BEND / np.maximum(z, _HIGH_BEND),
+            np.where(z > _HIGH_END, 0.0, _HIGH_BEND / np.maximum(z, _HIGH_BEND)),
         )
         total = float(weight.sum())
         if total <= 0.0:
@@ -79,5 +79,11 @@ def broken(rest_v: Numbers, noise_v: Numbers) -> int:
     if strength[place] < _BREAK or abs(step[place]) < 3.0:
         return 0
     first, last = rest_v[: place + 1], rest_v[place + 1 :]
-    apart = abs(middle(first) - middle(last))
-    return place + 1 if apart > 3.0 * middle(noise_v) else 0
+    before_v, after_v = middle(first), middle(last)
+    if abs(before_v - after_v) <= 3.0 * middle(noise_v):
+        return 0
+    for part, own_v, other_v in ((first, before_v, after_v), (last, after_v, before_v)):
+        agree = np.count_nonzero(np.abs(part - own_v) < np.abs(part - other_v))
+        if agree < max(_LEAST_PART, _AGREE * len(part)):
+            return 0
+    return place + 1

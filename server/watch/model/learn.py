@@ -65,14 +65,16 @@ def learn_noise(
     state.noise_v[at] += alike * (middle(state.noise_v[at]) - state.noise_v[at])
 
 
-def learn_onsets(state: State, some: Numbers) -> None:
+def learn_onsets(state: State, some: Numbers, pulled: Numbers) -> None:
     """How many shorts of each size begin in a crop, from the cells that had one when pulled.
 
     Size by size, so that many large shorts do not make small ones likely that no reading shows.
+    `pulled` is 1 for a cell that was; less where it is only likely.
     """
-    kept = _ONSETS_KEPT ** len(some)
-    state.shared[ONSET_SUMS] = kept * state.shared[ONSET_SUMS] + some.sum(axis=0)
-    state.shared[ONSET_COUNT] = kept * state.shared[ONSET_COUNT] + float(len(some))
+    count = float(pulled.sum())
+    kept = _ONSETS_KEPT**count
+    state.shared[ONSET_SUMS] = kept * state.shared[ONSET_SUMS] + pulled @ some
+    state.shared[ONSET_COUNT] = kept * state.shared[ONSET_COUNT] + count
 
 
 def onsets_per_crop(state: State) -> Numbers:

@@ -15,6 +15,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from server.watch.model.ages import (
+    OVERDUE,
     age_effect_v,
     age_of,
     age_variance,
@@ -97,12 +98,13 @@ def pulled(state: State, facts: Facts, places: NDArray[np.int64], hung_ms: Numbe
     mean = (weight * level).sum(axis=1)
     spread = (weight * (var + (level - mean[:, None]) ** 2)).sum(axis=1)
     is_known = state.known[places] > 0
-    learn_onsets(state, weight[is_known, 1:])
+    learn_onsets(state, weight[:, 1:], is_known.astype(float))
     crop_var = crop_variance(state, facts)
     state.weight[places] = 0.0
     state.weight[places, 0] = 1.0
     state.level_v[places] = mean[:, None]
-    before = np.clip((hung_ms - state.hung_ms[places]) / facts.crop_ms, 0.0, 2.0)
+    before = (hung_ms - state.hung_ms[places]) / facts.crop_ms
+    before = np.where(before <= OVERDUE, np.clip(before, 0.0, 2.0), np.nan)
     unsure = crop_var + age_variance(state, facts, np.where(np.isfinite(before), before, 0.0))
     level_var = np.where(is_known, spread + unsure, state.shared[SPREAD_V] ** 2)
     state.level_var[places] = level_var[:, None]
@@ -119,7 +121,8 @@ def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome
     shared = state.shared
     resistance = shared[RESISTANCE]
     age, youth = age_of(state, facts, at, readings.at_ms)
-    _pass_time(state, at, age, facts, days)
+    is_overdue = ~(readings.at_ms - state.hung_ms[at] <= OVERDUE * facts.crop_ms)
+    _pass_time(state, at, age, is_overdue, facts, days)
     lift = facts.rated_amps - readings.amps
     aged_v = age_effect_v(state, facts, age, youth)
     referred = readings.volts + resistance * (1.0 + state.tilt[at]) * lift - aged_v
@@ -177,14 +180,20 @@ def temper(state: State) -> float:
 
 
 def _pass_time(
-    state: State, at: NDArray[np.int64], age: Numbers, facts: Facts, days: float
+    state: State,
+    at: NDArray[np.int64],
+    age: Numbers,
+    is_overdue: Truths,
+    facts: Facts,
+    days: float,
 ) -> None:
     """Let shorts begin, grow and heal, and levels wander, in the time since the last round."""
     grid = sizes()
     weight, level, var = state.weight[at], state.level_v[at], state.level_var[at]
     lasts = min(max(days, 1.0 / 24.0), 2.0)
+    crops = lasts * _DAY_MS / facts.crop_ms
     begin = onsets_per_crop(state)
-    onset = 1.0 - np.exp(-begin.sum() * lasts * _DAY_MS / facts.crop_ms)
+    onset = 1.0 - np.exp(-begin.sum() * crops)
     into = np.concatenate(([-1.0], begin / begin.sum()))
     begun = np.minimum(onset * np.minimum(np.maximum(2.0 * age, _LEAST_AGE), _MOST_AGE), 0.5)
     # Under each size: how likely, and the level and its square times that.
@@ -195,10 +204,18 @@ def _pass_time(
     began = arrives[:, :, :1] * begun[:, None]
     after = arrives @ grid.passing
     after += began * into
+    wander = (_WANDER * state.noise_v[at] * _STANDARD) ** 2
+    if is_overdue.any():
+        # As many are pulled unseen as there are crops in that time, and their shorts with them.
+        unseen = np.where(is_overdue, min(crops, 0.5), 0.0)
+        learn_onsets(state, after[0, :, 1:], unseen)
+        gone = after[:, :, 1:] * unseen[:, None]
+        after[:, :, 1:] -= gone
+        after[:, :, 0] += gone.sum(axis=2)
+        wander = wander + crop_variance(state, facts) * unseen
     floor = np.maximum(after[0], 1e-300)
     # The level under each size is that of the mixture which arrives there.
     mean = after[1] / floor
-    wander = (_WANDER * state.noise_v[at] * _STANDARD) ** 2
     state.weight[at] = after[0]
     state.level_v[at] = mean
     state.level_var[at] = np.maximum(after[2] / floor - mean**2, 1e-12) + wander[:, None]

@@ -2,6 +2,8 @@
 
 import numpy as np
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from server.science.charge import (
     ESTIMATED,
@@ -36,6 +38,36 @@ def test_the_parts_of_a_day_add_up_to_the_day(uneven_current, cut_s):
     parts_c = charge_between(at_s, amps, 0.0, cut_s) + charge_between(at_s, amps, cut_s, DAY_S)
 
     assert parts_c == pytest.approx(whole_c, rel=1e-12)
+
+
+SAMPLES = st.lists(
+    st.tuples(st.floats(1.0, 7200.0), st.floats(0.0, 450_000.0)), min_size=1, max_size=30
+)
+
+
+@given(samples=SAMPLES, cuts=st.lists(st.floats(0.0, 1.0), min_size=1, max_size=8))
+def test_the_parts_of_any_charge_add_up(samples, cuts):
+    at_s = np.cumsum([gap_s for gap_s, _ in samples])
+    amps = [one for _, one in samples]
+    ends_s = sorted([0.0, *(cut * 2.0 * at_s[-1] for cut in cuts), 2.0 * at_s[-1]])
+
+    parts_c = [
+        charge_between(at_s, amps, start_s, end_s)
+        for start_s, end_s in zip(ends_s[:-1], ends_s[1:], strict=True)
+    ]
+
+    whole_c = charge_between(at_s, amps, ends_s[0], ends_s[-1])
+    assert sum(parts_c) == pytest.approx(whole_c, rel=1e-9, abs=1e-3)
+
+
+@given(samples=SAMPLES, factor=st.floats(0.0, 100.0))
+def test_charge_is_linear_in_the_current(samples, factor):
+    at_s = np.cumsum([gap_s for gap_s, _ in samples])
+    amps = np.array([one for _, one in samples])
+
+    scaled_c = charge_between(at_s, factor * amps, 0.0, 1e6)
+
+    assert scaled_c == pytest.approx(factor * charge_between(at_s, amps, 0.0, 1e6), rel=1e-9)
 
 
 def test_samples_within_the_hold_are_a_plain_staircase():

@@ -2,6 +2,8 @@
 
 import numpy as np
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from server.science.constants import COPPER, CUPROUS_COPPER, METALS, ZINC
 from server.science.errors import OutOfRange
@@ -24,6 +26,27 @@ def test_half_the_electrons_make_twice_the_metal():
 @pytest.mark.parametrize("known", METALS.values(), ids=METALS)
 def test_charge_and_mass_are_inverse(known):
     assert deposited_kg(charge_for_c(123.4, known), known) == pytest.approx(123.4, rel=1e-14)
+
+
+CHARGES_C = st.floats(0.0, 1e15)
+
+
+@given(one_c=CHARGES_C, other_c=CHARGES_C, factor=st.floats(0.0, 1e3))
+@pytest.mark.parametrize("known", METALS.values(), ids=METALS)
+def test_mass_is_linear_in_charge(known, one_c, other_c, factor):
+    both_kg = deposited_kg(one_c + other_c, known)
+    parts_kg = deposited_kg(one_c, known) + deposited_kg(other_c, known)
+
+    assert both_kg == pytest.approx(parts_kg, rel=1e-12, abs=1e-300)
+    assert deposited_kg(factor * one_c, known) == pytest.approx(
+        factor * deposited_kg(one_c, known), rel=1e-12, abs=1e-300
+    )
+
+
+@given(mass_kg=st.floats(0.0, 1e9))
+@pytest.mark.parametrize("known", METALS.values(), ids=METALS)
+def test_the_charge_of_any_mass_makes_it_again(known, mass_kg):
+    assert deposited_kg(charge_for_c(mass_kg, known), known) == pytest.approx(mass_kg, rel=1e-14)
 
 
 def test_masses_of_parts_add_up():

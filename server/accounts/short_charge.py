@@ -24,7 +24,7 @@ Whole = NDArray[np.int64]
 HOLD_MS = DAY_MS
 """How long a round speaks for a cell that is not read again."""
 
-BETWEEN_ROUNDS = 0.05
+BETWEEN_ROUNDS = 0.1
 """Relative standard uncertainty of what shorts take between rounds (common practice).
 
 They begin, grow and are found while nobody reads; a reading says what passed at its moment.
@@ -134,12 +134,14 @@ def _days(
     cells = int(holds.place.max(initial=-1)) + 1
     by_cell = np.zeros(count * cells)
     # A hold is shorter than a day and some hours: it touches at most so many hours of the clock.
+    live = np.arange(len(holds.place))
     for part in range(HOLD_MS // HOUR_MS + 1):
-        hour = (holds.from_ms - day_from) // HOUR_MS + part
-        use = (hour >= 0) & (hour < count * 24) & (day_from + hour * HOUR_MS < holds.to_ms)
-        if not use.any():
+        hour = (holds.from_ms[live] - day_from) // HOUR_MS + part
+        lasts = (hour < count * 24) & (day_from + hour * HOUR_MS < holds.to_ms[live])
+        live, hour = live[lasts], hour[lasts]
+        use, at = live[hour >= 0], hour[hour >= 0]
+        if not len(use):
             continue
-        at = hour[use]
         starts_c, ends_c = edge_c[at], edge_c[at + 1]
         if part == 0:
             starts_c = record.charge_at(holds.from_ms[use])[0]
@@ -150,7 +152,9 @@ def _days(
         hours[:, 0] += np.bincount(at, holds.share[use] * passed_c, minlength=len(hours))
         hours[:, 1] += np.bincount(at, passed_c, minlength=len(hours))
         by_cell += np.bincount(
-            (at // 24) * cells + holds.place[use], holds.u_share[use] * passed_c, len(by_cell)
+            (at // 24) * cells + holds.place[use],
+            holds.u_share[use] * passed_c,
+            minlength=len(by_cell),
         )
     variance = (by_cell.reshape(count, cells) ** 2).sum(axis=1) if cells else variance
     rows = []

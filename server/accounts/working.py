@@ -2,6 +2,7 @@
 
 from server.accounts.doubt import ESTIMATED_CURRENT, STOCK_MODEL
 from server.accounts.results import Charge, Crops, Energy, Input, Made, Shorts, Working
+from server.accounts.short_charge import BETWEEN_ROUNDS
 from server.science.constants import FARADAY_C_MOL, Metal
 from server.science.faraday import equivalent_kg_c
 from server.science.units import kah_from_coulombs, kwh_from_joules, kwh_t_from_j_kg
@@ -137,6 +138,7 @@ def _of_shorts(shorts: Shorts | None, cell_kah: Input) -> tuple[Working, ...]:
                     "%",
                     "rounds at different currents, or the plant set-up",
                 ),
+                Input("what passes between rounds", BETWEEN_ROUNDS * 100, "%", "common practice"),
                 Input(
                     "uncertainty",
                     _kah(shorts.u_charge_c),

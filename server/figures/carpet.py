@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
-from server.figures.encode import float64, offsets_ms, table32
+from server.figures.encode import table32, wall_clock
 from server.figures.layout import HIGH, LINE, LOW, PALE, Axis, Figure, Window, layout
 
 FULL_SHADE = 6.0
@@ -18,8 +18,11 @@ FULL_SHADE = 6.0
 _CALM = 2.0
 """Up to here all is the same grey."""
 
-_LONGEST_MS = 12 * 3_600_000
-"""A column is no wider than this; what follows until the next round is blank."""
+_USUAL_MS = 8 * 3_600_000
+"""From round to round, where there is but one."""
+
+_LONG = 2.2
+"""Times the usual time between rounds, beyond which the time between is blank."""
 
 _CELL_PX = 4.0
 _LEAST_PX, _MOST_PX = 150, 460
@@ -49,8 +52,7 @@ def carpet_figure(
     stand in several rows a thin line parts them.
     """
     cells = max(len(times_band), 1)
-    edges_ms, columns = _columns(started_ms, window.to_ms)
-    wall_ms = edges_ms + offsets_ms(edges_ms, window.zone)
+    middles_ms, columns = _columns(started_ms)
     ends = cells + 0.5, 0.5
     drawn = layout(window, Axis(words.cell, "", 0), (0.5, cells + 0.5), height=_height(cells))
     per_row = -(-cells // max(rows, 1))
@@ -73,7 +75,7 @@ def carpet_figure(
         "data": [
             {
                 "type": "heatmap",
-                "x": float64(wall_ms),
+                "x": wall_clock(middles_ms, window.zone),
                 "y": list(range(1, cells + 1)),
                 "z": table32(_spread(times_band, columns)),
                 "customdata": table32(_spread(np.round(deviation_mv, 1), columns)),
@@ -90,24 +92,23 @@ def carpet_figure(
     }
 
 
-def _columns(
-    started_ms: NDArray[np.int64], to_ms: int
-) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
-    """Edges of the columns, and of each the round that it shows; -1 for a blank one."""
-    follows = np.append(started_ms, to_ms)[1:]
-    ends = np.minimum(started_ms + _LONGEST_MS, follows)
-    edges: list[int] = []
-    shown: list[int] = []
-    for nth, (start, end, following) in enumerate(
-        zip(started_ms.tolist(), ends.tolist(), follows.tolist(), strict=True)
-    ):
-        edges.append(start)
-        shown.append(nth)
-        if end < following:
-            edges.append(end)
-            shown.append(-1)
-    last_ms = max([to_ms, *(edge + 1 for edge in edges[-1:])])
-    return np.array([*edges, last_ms], np.int64), np.array(shown, np.int64)
+def _columns(started_ms: NDArray[np.int64]) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    """Middles of the columns, and of each the round that it shows; -1 for a blank one.
+
+    Columns meet half-way, so that a longer time without rounds needs blank ones at its ends.
+    """
+    gaps_ms = np.diff(started_ms)
+    usual_ms = int(np.median(gaps_ms)) if len(gaps_ms) else _USUAL_MS
+    after = np.flatnonzero(gaps_ms > _LONG * usual_ms)
+    blank_ms = [started_ms[after] + usual_ms, started_ms[after + 1] - usual_ms]
+    if len(started_ms) == 1:
+        blank_ms = [started_ms - usual_ms, started_ms + usual_ms]
+    middles = np.concatenate([started_ms, *blank_ms])
+    shown = np.concatenate(
+        [np.arange(len(started_ms)), np.full(len(middles) - len(started_ms), -1)]
+    )
+    order = np.argsort(middles, kind="stable")
+    return middles[order], shown[order]
 
 
 def _spread(values: NDArray[np.float32], columns: NDArray[np.int64]) -> NDArray[np.float32]:

@@ -24,21 +24,35 @@ def drawn(started_h, times, rows=1):
     return carpet_figure(WINDOW, started, times * np.float32(8), times, rows, WORDS)
 
 
-def test_each_round_is_as_wide_as_the_time_to_the_next():
-    (carpet,) = drawn([0, 8, 16, 24, 36], [[1, 2, 3, 4, 5]])["data"]
+def hours_of(carpet):
+    return ((unpacked(carpet["x"]) - FROM_MS) / HOUR_MS).tolist()
 
-    hours = (unpacked(carpet["x"]) - FROM_MS) / HOUR_MS
-    assert hours.tolist() == [0, 8, 16, 24, 36, 48]
+
+def test_each_round_stands_at_its_time():
+    (carpet,) = drawn([0, 8, 16, 25, 36], [[1, 2, 3, 4, 5]])["data"]
+
+    assert hours_of(carpet) == [0, 8, 16, 25, 36]
     assert unpacked(carpet["z"]).tolist() == [[1, 2, 3, 4, 5]]
 
 
 def test_a_time_without_rounds_is_blank():
-    (carpet,) = drawn([0, 30], [[1, 2], [3, 4]])["data"]
+    (carpet,) = drawn([0, 8, 16, 40, 48], [[1, 2, 3, 4, 5]])["data"]
 
-    hours = (unpacked(carpet["x"]) - FROM_MS) / HOUR_MS
-    assert hours.tolist() == [0, 12, 30, 42, 48]
+    assert hours_of(carpet) == [0, 8, 16, 24, 32, 40, 48]
     blank = np.isnan(unpacked(carpet["z"]))
-    assert blank.tolist() == [[False, True, False, True]] * 2
+    assert blank.tolist() == [[False, False, False, True, True, False, False]]
+
+
+def test_rounds_once_a_day_leave_nothing_blank():
+    (carpet,) = drawn([0, 24, 48], [[1, 2, 3]])["data"]
+
+    assert not np.isnan(unpacked(carpet["z"])).any()
+
+
+def test_a_round_alone_is_as_wide_as_a_shift():
+    (carpet,) = drawn([10], [[1]])["data"]
+
+    assert hours_of(carpet) == [2, 10, 18]
 
 
 def test_a_cell_that_was_not_read_is_blank_and_says_nothing():
@@ -68,7 +82,7 @@ def test_the_first_cell_is_on_top_and_a_line_parts_the_rows():
 def test_numbers_stand_in_the_tooltip():
     (carpet,) = drawn([0], [[-4.5]])["data"]
 
-    assert unpacked(carpet["customdata"])[0, 0] == -36.0
+    assert unpacked(carpet["customdata"])[0, 1] == -36.0
     assert "%{customdata:.0f} mV, %{z:.1f} bands" in carpet["hovertemplate"]
 
 

@@ -75,6 +75,7 @@ def _inputs() -> dict[str, str]:
         "estimated current": _("estimated current"),
         "watched charge": _("watched charge"),
         "uncertainty of R_d": _("uncertainty of R_d"),
+        "what passes between rounds": _("what passes between rounds"),
         "uncertainty": _("uncertainty"),
     }
 

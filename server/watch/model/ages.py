@@ -37,7 +37,7 @@ OVERDUE = 3.0
 _KEPT = 0.99
 
 # Surprises count up to so many standard deviations.
-_MOST = 3.0
+_MOST = 2.5
 
 # How likely healthy a cell must be to teach what age does.
 _SOUND = 0.8
@@ -119,7 +119,10 @@ def learn_ages(
         weight = 1.0 / var[use]
         shared[AGE_WEIGHT] = kept * shared[AGE_WEIGHT] + float((younger**2 * weight).sum())
         shared[AGE_SUM] = kept * shared[AGE_SUM] + float((younger * found * weight).sum())
-        more = float((away[use] ** 2 - (var[use] - crop_var)).sum())
+        # A short that nobody saw made the level before the pull too low: only cells that read
+        # less than before tell how far a crop by itself moves the level.
+        lower = use & (away < 0.0)
+        more = float((away[lower] ** 2 - (var[lower] - crop_var)).sum())
         shared[CROP_SUM] = kept * shared[CROP_SUM] + more
-        shared[CROP_COUNT] = kept * shared[CROP_COUNT] + float(use.sum())
+        shared[CROP_COUNT] = kept * shared[CROP_COUNT] + float(lower.sum())
     state.fresh[cells[is_old]] = 0.0

@@ -10,10 +10,13 @@ from server.watch.model.state import CROP_COUNT, CROP_SUM, State
 Numbers = NDArray[np.float64]
 
 # Weight of the newest reading in the recent mean (Roberts 1959): it looks back about three days.
-RECENT = 0.10
+RECENT = 0.12
+
+# A reading counts in full up to so many times the variance of a plain one.
+_SURE = 1.5
 
 # The reference takes the mean of the first readings, then follows over about four months.
-_SETTLED, _FOLLOWS = 20.0, 1.0 / 360.0
+_SETTLED, _LEARNED, _FOLLOWS = 20.0, 45.0, 1.0 / 360.0
 
 
 def gather(
@@ -23,6 +26,7 @@ def gather(
     above_v: Numbers,
     healthy: Numbers,
     noise_v: Numbers,
+    base_var: Numbers,
 ) -> tuple[Numbers, Numbers]:
     """Recent mean of each cell against its reference, and how far chance alone takes it.
 
@@ -35,16 +39,18 @@ def gather(
     away = above_v - state.reference_v[at]
     is_settled = known >= _SETTLED
     before = state.recent_v[at]
-    recent = before + RECENT * healthy * held(away - before, limit)
+    sure = healthy * np.minimum(1.0, _SURE * noise_v**2 / base_var)
+    recent = before + RECENT * sure * held(away - before, limit)
     recent = np.where(is_settled, recent, 0.0)
     state.recent_v[at] = recent
-    follow = np.where(is_settled, _FOLLOWS, 1.0 / (known + 1.0)) * healthy
+    follow = np.where(known >= _LEARNED, _FOLLOWS, 1.0 / (known + 1.0)) * sure
     state.reference_v[at] += follow * held(away, 2 * limit)
     if np.count_nonzero(is_settled) >= ENOUGH:
         # What all cells do is no drift of one.
         recent = recent - middle(recent[is_settled])
     crop_var = max(state.shared[CROP_SUM] / (state.shared[CROP_COUNT] + 10.0), 0.0)
     chance = np.sqrt(
-        noise_v**2 * (RECENT / (2.0 - RECENT) + 1.0 / np.maximum(known, 1.0)) + 0.5 * crop_var
+        noise_v**2 * (RECENT / (2.0 - RECENT) + 1.0 / np.clip(known, 1.0, _LEARNED))
+        + 0.5 * crop_var
     )
     return recent, chance

@@ -40,6 +40,10 @@ _MOST = 3.0
 # Share of rated current by which it must have changed to teach anything about resistance.
 _LEAST_CHANGE = 0.03
 
+# A change of current that the log has missed is none to learn from: of the resistance as it is
+# known the voltage must have followed to within this share, and the walk must have been steady.
+_MOST_WRONG, _STEADY = 0.6, 0.02
+
 # Variance by which a cell's own resistance may wander between rounds.
 _TILT_WANDER = 1e-8
 
@@ -84,6 +88,11 @@ def onsets_per_crop(state: State) -> Numbers:
     return np.asarray(seen / (state.shared[ONSET_COUNT] + _ONSETS_BEFORE))
 
 
+def _is_steady(amps: Numbers) -> bool:
+    """Whether the current stood still during the walk."""
+    return bool(amps.max() - amps.min() < _STEADY * amps.max())
+
+
 def learn_resistance(
     state: State,
     facts: Facts,
@@ -111,7 +120,11 @@ def learn_resistance(
         change = amps - before_amps
         miss = now - before - shared[RESISTANCE] * change
         noise = shared[COMMON_STEP_V]
+        is_plain = abs(miss) < _MOST_WRONG * shared[RESISTANCE] * abs(change) + _MOST * noise
         if abs(change) > _LEAST_CHANGE * facts.rated_amps:
+            if not is_plain or not _is_steady(readings.amps):
+                shared[COMMON_V], shared[COMMON_AMPS] = np.nan, amps
+                return
             total = change**2 * shared[RESISTANCE_VAR] + noise**2
             gain = change * shared[RESISTANCE_VAR] / total
             limit = _MOST * np.sqrt(total)

@@ -15,7 +15,7 @@ SHORT, HIGH, LOW, UNREAD, SUSPECT = range(len(KINDS))
 
 # Raised falsely among 1,000 readings: what is asked for, with some room for what the model does
 # not know.
-_FALSE_SHARE = 1.6e-3
+_FALSE_SHARE = 2.2e-3
 
 # The probability of a short from which a cell is watched is moved until its own expected share of
 # false flags is that asked for: by so much (log odds) for each flag too many, between two bounds.
@@ -28,13 +28,19 @@ ACT = 0.99
 _OVER = 0.10
 
 # How far a cell is from what it used to read, in standard deviations of chance.
-_DRIFT_LOOK, _DRIFT_ACT, _DRIFT_OVER = 3.5, 5.5, 1.5
+_DRIFT_LOOK, _DRIFT_ACT, _DRIFT_OVER = 3.2, 5.5, 1.2
 
 # Readings of a cell before its drifts are judged.
 _ENOUGH_FOR_DRIFTS = 30
 
 # Readings in a row that end a flag.
 _IN_A_ROW = 2
+
+# Standard deviations by which one reading leaves no doubt.
+_PLAIN = 4.5
+
+# Readings after the end of a flag at which the same is not raised again: it would chatter.
+_RESTS = 4.0
 
 # Rounds in a row that a cell may be left out.
 _MOST_MISSED = 3
@@ -72,6 +78,7 @@ def end_at_pull(state: State, book: Book, places: Places, pulled_ms: NDArray[np.
     for place, at_ms in zip(places.tolist(), pulled_ms.tolist(), strict=True):
         if state.raised_ms[place, SHORT] > 0:
             _end(state, book, place, SHORT, at_ms)
+        state.calm[place, SHORT] = 0.0
 
 
 def end_all(state: State, book: Book, first: int, at_ms: int) -> None:
@@ -89,6 +96,8 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
     is_known = state.known[at] > _ENOUGH_FOR_DRIFTS
     is_likely = probability >= 0.5
     look = look_probability(state)
+    # What nobody would take for noise is raised even where the same has just ended.
+    is_plain = (probability >= ACT) & (outcome.deviation_v < -_PLAIN * outcome.band_v)
     for kind, is_raised, is_acting, is_over in (
         (SHORT, probability >= look, probability >= ACT, probability < _OVER),
         (
@@ -105,9 +114,10 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
         ),
     ):
         is_open = state.raised_ms[at, kind] > 0
-        if not (is_raised | is_open).any():
+        if not (is_raised | is_open | (state.calm[at, kind] < 0.0)).any():
             continue
-        for spot in np.flatnonzero(is_raised & ~is_open).tolist():
+        is_ready = (state.calm[at, kind] >= 0.0) | is_plain
+        for spot in np.flatnonzero(is_raised & ~is_open & is_ready).tolist():
             _raise(
                 state,
                 book,
@@ -120,10 +130,13 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
             )
         for spot in np.flatnonzero(is_open & is_acting & (state.acting[at, kind] == 0)).tolist():
             _act(state, book, int(at[spot]), kind)
-        calm = np.where(is_open & is_over, state.calm[at, kind] + 1.0, 0.0)
+        former = state.calm[at, kind]
+        rested = np.minimum(former + 1.0, 0.0)
+        calm = np.where(is_open, np.where(is_over, former + 1.0, 0.0), rested)
         state.calm[at, kind] = calm
         for spot in np.flatnonzero(is_open & (calm >= _IN_A_ROW)).tolist():
             _end(state, book, int(at[spot]), kind, int(at_ms[spot]))
+            state.calm[int(at[spot]), kind] = -_RESTS
     _hold_rate(state, book, outcome, before)
     for kind in (UNREAD, SUSPECT):
         since = state.raised_ms[at, kind]

@@ -52,7 +52,7 @@ class State:
     acting: Numbers
     """(cells, kinds): 1 where the open flag says to act."""
     calm: Numbers
-    """(cells, kinds): readings in a row that speak for its end."""
+    """(cells, kinds): readings in a row that speak for its end; below 0, readings still to rest."""
     shared: Numbers
     """What the cells share, by the places below."""
 

@@ -60,6 +60,10 @@ _MOST_Z = 3.5
 # Relative standard deviation of sizes spread evenly over a step of the grid.
 _STEP_DOUBT = float(np.log(sizes().shares[1] / sizes().shares[0]) / np.sqrt(12.0))
 
+# Share of a jump of the current within a walk by which readings after it are unsure, and readings
+# on either side of it that may have been taken while it went on.
+_ON_ITS_WAY, _NEAR = 0.1, 2
+
 # How likely healthy a cell must be when it is pulled to teach anything of the next crop.
 _SOUND = 0.8
 
@@ -157,7 +161,7 @@ def step(state: State, facts: Facts, readings: Readings, days: float) -> Outcome
         state, facts, at, readings, common, first, first_sd, healthy, tilt_v, var[:, 0]
     )
     _echo(state, at, z[:, 0], healthy)
-    lasting, u_lasting = gather(state, facts, at, referred - common, healthy, noise_v)
+    lasting, u_lasting = gather(state, facts, at, referred - common, healthy, noise_v, base_var)
     state.known[at] += 1.0
     state.missed[at] = 0.0
     shared[ROUNDS] += 1.0
@@ -244,7 +248,33 @@ def _common(
         else:
             common[cut] = middle(rest[cut])
             var[cut] = state.shared[COMMON_STEP_V] ** 2
+    if len(parts) > 1:
+        var += _unsteadiness(parts, rest, spread, common)
     return common, var
+
+
+def _unsteadiness(
+    parts: list[tuple[int, int]], rest: Numbers, spread: Numbers, common: Numbers
+) -> Numbers:
+    """What the jumps of a walk make unsure: the current was not what the log says, for a while.
+
+    The longest part is taken to be the plain one. In the others, and next to a jump, the current
+    may still have been on its way.
+    """
+    longest = max(parts, key=lambda part: part[1] - part[0])
+    plain = common[longest[0]]
+    unsure = np.zeros(len(rest))
+    for first, last in parts:
+        cut = slice(first, last)
+        jump = abs(float(common[first]) - float(plain))
+        wide = 1.4826 * middle(np.abs(rest[cut] - common[cut]))
+        more = max(wide**2 - float(middle(spread[cut])) ** 2, 0.0)
+        unsure[cut] = more + (_ON_ITS_WAY * jump) ** 2
+        if jump > 0.0:
+            for edge in (first, last):
+                near = slice(max(edge - _NEAR, 0), edge + _NEAR)
+                unsure[near] = np.maximum(unsure[near], (0.5 * jump) ** 2)
+    return unsure
 
 
 def _parts(rest: Numbers, spread: Numbers) -> list[tuple[int, int]]:

@@ -15,7 +15,7 @@ SHORT, HIGH, LOW, UNREAD, SUSPECT = range(len(KINDS))
 
 # Raised falsely among 1,000 readings: what is asked for, with some room for what the model does
 # not know.
-_FALSE_SHARE = 2.2e-3
+_FALSE_SHARE = 1.7e-3
 
 # The probability of a short from which a cell is watched is moved until its own expected share of
 # false flags is that asked for: by so much (log odds) for each flag too many, between two bounds.
@@ -28,7 +28,7 @@ ACT = 0.99
 _OVER = 0.10
 
 # How far a cell is from what it used to read, in standard deviations of chance.
-_DRIFT_LOOK, _DRIFT_ACT, _DRIFT_OVER = 3.2, 5.5, 1.2
+_DRIFT_LOOK, _DRIFT_ACT, _DRIFT_OVER = 3.35, 5.5, 1.2
 
 # Readings of a cell before its drifts are judged.
 _ENOUGH_FOR_DRIFTS = 30

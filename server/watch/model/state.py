@@ -99,7 +99,8 @@ def fresh_state(facts: Facts) -> State:
     """A section of which no reading has been seen."""
     cells, columns = facts.cells, len(sizes().shares) + 1
     weight = np.zeros((cells, columns))
-    weight[:, 0] = 1.0
+    weight[:, 0] = 1.0 - _STANDING
+    weight[:, 1:] = _STANDING * sizes().prior
     shared = np.zeros(_SHARED)
     shared[RESISTANCE] = facts.resistance_ohm
     shared[RESISTANCE_VAR] = facts.u_resistance_ohm**2
@@ -128,6 +129,9 @@ def fresh_state(facts: Facts) -> State:
         shared=shared,
     )
 
+
+# Common practice: share of cells that have a short when nobody has looked yet.
+_STANDING = 0.06
 
 # Of what is known of cells that are made anew, this stays.
 _KEPT = ("raised_ms", "acting", "calm", "hung_ms")

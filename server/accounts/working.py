@@ -126,7 +126,7 @@ def _of_shorts(shorts: Shorts | None, cell_kah: Input) -> tuple[Working, ...]:
         return ()
     return (
         Working(
-            "ledger.shorts_kah",
+            "ledger.shorts.kah",
             "sum over cells of the integral of (I_s / I) dQ, I_s = -deviation / R_d, each held to"
             " the cell's next round",
             (

@@ -25,7 +25,7 @@ from server.watch.model.facts import facts_of
 from server.watch.model.raising import Raised
 from server.watch.model.replay import Doubted, Pulls, Replayed, Stays, replay
 from server.watch.model.rounds import PAUSE_MS, ordered
-from server.watch.model.state import KINDS, State, unpacked
+from server.watch.model.state import KINDS, State, is_readable, unpacked
 from server.watch.model.step import Outcome
 
 _DAY_MS = 86_400_000
@@ -50,6 +50,9 @@ def rewatch(
     since and the flags. What follows is not touched: the caller has marked it.
     """
     kept = state_before(session, section.id, from_ms - PAUSE_MS)
+    if kept and not is_readable(kept[2]):
+        # Another release remembered otherwise: the section is worked off from its start.
+        kept = None
     start_ms = kept[1] + 1 if kept else 0
     heard = hear(start_ms, to_ms + _LONGEST_ROUND_MS)
     forget_states(session, section.id, kept[0] if kept else -1)

@@ -173,7 +173,7 @@ def test_shorts_are_an_item_of_their_own_and_leave_less_unexplained(pair):
     assert items["shorts"].u_share > 0
     assert "% of the charge" in items["shorts"].basis
     assert items["not explained"].u_share >= items["metal"].u_share
-    working = next(w for w in books.working if w.figure == "ledger.shorts_kah")
+    working = next(w for w in books.working if w.figure == "ledger.shorts.kah")
     assert working.value == pytest.approx(items["shorts"].charge_c / 3.6e6)
 
 

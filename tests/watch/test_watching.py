@@ -12,7 +12,7 @@ from server.settings import Settings
 from server.storage import readings
 from server.storage.current import keep_bypasses
 from server.storage.database import Database
-from server.storage.direct import fetch_rows
+from server.storage.direct import execute, fetch_rows
 from server.storage.flag_rows import flags_touching
 from server.storage.plant import Cell, house
 from server.storage.stale import mark
@@ -252,6 +252,24 @@ def test_a_late_round_changes_only_what_follows_it(session, at_once):
     assert len(earlier) > 40
     assert after["watched_round"][: len(earlier)] == earlier
     assert_same(after, at_once)
+
+
+def test_what_another_release_remembered_is_not_read(session, at_once):
+    told = events()
+    section = plant(session)
+    for one in told[:-1]:
+        arrive(session, section, one)
+    done(session)
+    for day_ms, state in fetch_rows(session, "SELECT day_ms, state FROM watch_state"):
+        execute(
+            session,
+            "UPDATE watch_state SET state = ? WHERE day_ms = ?",
+            (np.float64(99.0).tobytes() + bytes(state)[8:], day_ms),
+        )
+
+    arrive(session, section, told[-1])
+
+    assert_same(done(session), at_once)
 
 
 def test_a_corrected_reading_gives_the_same_as_if_it_had_come_first(database, session):

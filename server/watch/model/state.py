@@ -10,7 +10,8 @@ from server.watch.model.sizes import sizes
 
 Numbers = NDArray[np.float64]
 
-_VERSION = 1.0
+# Raised with every change of what is remembered: what an older program kept is not read then.
+_VERSION = 2.0
 
 # Kinds of flags that the model raises, in the order of the columns of `raised_ms`.
 KINDS = ("short", "drift high", "drift low", "no reading", "suspect reading")
@@ -157,6 +158,11 @@ _MEAN_ABSOLUTE = 0.7978845608028654
 
 # Common practice: resistances of the cells of one section differ by some per cent.
 _TILT = 0.05
+
+
+def is_readable(content: bytes) -> bool:
+    """Whether this program packed it, or one that remembers the same."""
+    return float(np.frombuffer(content, "<f8", count=1)[0]) == _VERSION
 
 
 def unpacked(content: bytes) -> State:

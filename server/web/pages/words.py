@@ -99,7 +99,7 @@ def figure_words(figure: str) -> str:
         "period.current_efficiency_pct": _("Current efficiency of the period"),
         "energy.dc_kwh": _("DC energy"),
         "energy.specific_energy_kwh_t": _("Specific energy"),
-        "ledger.shorts_kah": _("Charge through shorts"),
+        "ledger.shorts.kah": _("Charge through shorts"),
     }
     return words.get(figure, figure)
 

@@ -91,7 +91,10 @@ def test_each_working_is_of_a_figure_of_the_account(section, client):
     for working in found["working"]:
         value = found
         for step in working["figure"].split("."):
-            value = value[step]
+            if isinstance(value, list):
+                [value] = [item for item in value if item["item"] == step]
+            else:
+                value = value[step]
         assert working["value"] == pytest.approx(value), working["figure"]
 
 

@@ -61,7 +61,7 @@ def _measured(section: SectionPlan, raised: Raised, flag: Flag) -> None:
     side = "below" if volts < expected else "above"
     seen = (
         f"{volts:.3f} V, {away_mv:.0f} mV {side} the {expected:.3f} V (± {band * 1000:.0f} mV)"
-        " that the cell would show by its own former readings and by the section's other cells"
+        " that its own former readings and the cells around it say"
     )
     if raised.kind != SHORT:
         lasting_mv, chance_mv = (
@@ -74,8 +74,8 @@ def _measured(section: SectionPlan, raised: Raised, flag: Flag) -> None:
             else " Nodules or a short that creeps."
         )
         flag.evidence = (
-            f"Over the last days it has {what} {lasting_mv:.0f} mV from what it used to be;"
-            f" chance alone makes {chance_mv:.0f} mV. Now {seen}.{hint}"
+            f"Over the last days it has {what} {_mv(lasting_mv)} from what it used to be;"
+            f" chance alone makes {_mv(chance_mv)}. Now {seen}.{hint}"
         )
         return
     metal = process(section.process, section.metal, section.electrons).metal
@@ -92,3 +92,8 @@ def _measured(section: SectionPlan, raised: Raised, flag: Flag) -> None:
         f" {amps / 1000:.1f} kA would pass there ({low / 1000:.1f} to"
         f" {(amps + _INTERVAL * u_amps) / 1000:.1f}), {lost_kg:.0f} kg of {metal.name} a day."
     )
+
+
+def _mv(millivolts: float) -> str:
+    """A few millivolts with a decimal, more without."""
+    return f"{millivolts:.1f} mV" if millivolts < 9.95 else f"{millivolts:.0f} mV"

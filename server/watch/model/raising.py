@@ -30,6 +30,9 @@ _OVER = 0.10
 # How far a cell is from what it used to read, in standard deviations of chance.
 _DRIFT_LOOK, _DRIFT_ACT, _DRIFT_OVER = 3.35, 5.5, 1.2
 
+# Noises of a reading that a drift must have come to before somebody is sent for it.
+_MATERIAL = 2.0
+
 # Readings of a cell before its drifts are judged.
 _ENOUGH_FOR_DRIFTS = 30
 
@@ -93,6 +96,7 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
     before = len(book.raised)
     probability = outcome.probability
     away = outcome.lasting_v / outcome.u_lasting_v
+    is_material = np.abs(outcome.lasting_v) >= _MATERIAL * outcome.band_v
     is_known = state.known[at] > _ENOUGH_FOR_DRIFTS
     is_likely = probability >= 0.5
     look = look_probability(state)
@@ -103,13 +107,13 @@ def judge(state: State, book: Book, outcome: Outcome) -> None:
         (
             HIGH,
             is_known & (away >= _DRIFT_LOOK),
-            away >= _DRIFT_ACT,
+            (away >= _DRIFT_ACT) & is_material,
             away < _DRIFT_OVER,
         ),
         (
             LOW,
             is_known & (away <= -_DRIFT_LOOK) & ~is_likely,
-            away <= -_DRIFT_ACT,
+            (away <= -_DRIFT_ACT) & is_material,
             (away > -_DRIFT_OVER) | is_likely,
         ),
     ):

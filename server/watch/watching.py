@@ -96,7 +96,9 @@ def _replayed(
         is_wanted = day_ms >= recent_ms or day_ms % _EVERY_MS == 0
         return is_wanted and day_ms > known_day
 
-    crops = crops_pulled(session, section.id, 0, to_ms + _LONGEST_ROUND_MS)
+    # Earlier pulls are in what is remembered.
+    since_ms = 0 if last_ms is None else last_ms + 1
+    crops = crops_pulled(session, section.id, since_ms, to_ms + _LONGEST_ROUND_MS)
     parts: list[Replayed] = []
     # What is remembered is of the cells that there were in the last round before.
     former = None if last_ms is None else section.terms_at(last_ms)

@@ -38,11 +38,10 @@ def serve_books(
     if not is_free(host, port):
         fail(f"{host}:{port} is taken, or cannot be served on; choose another --port", REFUSED)
     # Loaded here, so that the commands that serve nothing start without all of the web.
-    import uvicorn
-
     from server.web.app import create_app
+    from server.web.serving import run
 
-    uvicorn.run(
+    run(
         create_app(chosen, database),
         host=host,
         port=port,

@@ -70,6 +70,7 @@ def _life(here: Site, closes_database: bool) -> Any:
         background = Background(here)
         background.start()
         yield
+        here.live.stop()
         background.stop()
         if closes_database:
             here.database.close()

@@ -127,6 +127,20 @@ async function start(drawing) {
   }
 }
 
+// What live.js has changed beneath a figure, or a figure that is new on the page.
+async function anew(drawing) {
+  if (!figures.has(drawing)) {
+    near.observe(drawing);
+    return;
+  }
+  try {
+    figures.set(drawing, await told(drawing));
+    draw(drawing);
+  } catch (error) {
+    console.warn(error);
+  }
+}
+
 const widths = new ResizeObserver((changes) => {
   requestAnimationFrame(() => {
     for (const { target } of changes) {
@@ -147,4 +161,5 @@ const near = new IntersectionObserver(
 );
 
 dark.addEventListener("change", () => [...figures.keys()].forEach(draw));
+document.addEventListener("figure:changed", ({ target }) => anew(target));
 document.querySelectorAll("[data-figure]").forEach((drawing) => near.observe(drawing));

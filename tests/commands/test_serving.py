@@ -14,7 +14,7 @@ def served(terminal, monkeypatch):
     def run(app, **options):
         told.update(options, app=app)
 
-    monkeypatch.setattr("uvicorn.run", run)
+    monkeypatch.setattr("server.web.serving.run", run)
     monkeypatch.setattr(serving, "is_free", lambda _host, _port: True)
     return told
 

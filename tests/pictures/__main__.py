@@ -72,6 +72,8 @@ def picture(
     context = browser.new_context(service_workers="block", locale="en-GB", **options)
     context.add_cookies([cookie])
     page = context.new_page()
+    # What an open page listens to is never idle.
+    page.route("**/events", lambda route: route.abort())
     page.goto(address, wait_until="networkidle")
     page.screenshot(path=path, full_page=whole)
     context.close()

@@ -31,6 +31,7 @@ from server.web.dependencies import (
     WriteSession,
 )
 from server.web.i18n import gettext as _
+from server.web.live import live_token
 from server.web.moments import moment_of
 from server.web.pages import words
 from server.web.pages.cell_figures import crops_figure, voltage_figure
@@ -82,8 +83,9 @@ def cell(
     asked: Annotated[Asked, Depends()],
 ) -> HTMLResponse:
     """Show one cell over a period."""
+    live = {"live": live_token(db)}
     view = _view(db, house, section_name, number, who, now_ms, asked, Correction())
-    return page(request, "cell.html", view)
+    return page(request, "cell.html", live | view)
 
 
 @router.post("/sections/{section_name}/cells/{number}/readings/{at_ms}", name="cell_correct")

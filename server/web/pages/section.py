@@ -24,6 +24,7 @@ from server.storage.watch_rows import has_rounds
 from server.watch.worklist import worklist
 from server.web.dependencies import DbSession, Now, Reader, ThisHouse, ThisSite
 from server.web.filters import no_data, number
+from server.web.live import live_token
 from server.web.pages import words
 from server.web.pages.account_words import account_words
 from server.web.pages.floor_words import floor_sentence, needle_words
@@ -61,10 +62,11 @@ def section(
     last: Annotated[str | None, Query(alias="to")] = None,
 ) -> HTMLResponse:
     """Show a section's floor as it is now, and its books over a period."""
+    live = {"live": live_token(db)}
     last_ms = last_recorded_ms(db, house.section(section_name))
     period = chosen_period(house, now_ms, first, last, days=DEFAULT_DAYS, last_ms=last_ms)
     view = _view(db, house, section_name, now_ms, period, site.settings)
-    return page(request, "section.html", view)
+    return page(request, "section.html", live | view)
 
 
 def _view(

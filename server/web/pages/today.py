@@ -11,6 +11,7 @@ from server.intake.suspicion import suspect_count
 from server.storage.plant import House
 from server.watch.worklist import worklist
 from server.web.dependencies import DbSession, Now, Reader, ThisHouse, ThisSite
+from server.web.live import live_token
 from server.web.pages.words import metal_words, process_words
 from server.web.render import page
 
@@ -28,7 +29,8 @@ def today(
     request: Request, _who: Reader, db: DbSession, house: ThisHouse, now_ms: Now, site: ThisSite
 ) -> HTMLResponse:
     """Show the house as it is now."""
-    return page(request, "today.html", _view(db, house, now_ms, site.settings.max_hold_ms))
+    live = {"live": live_token(db)}
+    return page(request, "today.html", live | _view(db, house, now_ms, site.settings.max_hold_ms))
 
 
 def _view(session: Session, house: House, now_ms: int, max_hold_ms: int) -> dict[str, object]:

@@ -30,6 +30,7 @@ from server.web.dependencies import (
     WriteSession,
 )
 from server.web.i18n import gettext as _
+from server.web.live import live_token
 from server.web.pages import worklist_words as words
 from server.web.pages.worklist_view import (
     ON_ONE_PAGE,
@@ -202,10 +203,12 @@ def _page(
     told: Told,
     tried: Tried,
 ) -> Response:
+    # A page that tells of a fault in a form stays as it is.
+    live = {} if tried.fault else {"live": live_token(session)}
     every = open_flags(session, house, now_ms)
     items = [item for item in every if shown.holds(item)]
     following = shown.start + ON_ONE_PAGE
-    context = {
+    context = live | {
         "shown": shown,
         "groups": groups(session, house, items, shown, now_ms),
         "totals": totals(items),

@@ -68,7 +68,7 @@ def j_kg_from_kwh_t(kwh_t: Value) -> Value:
     Parameters
     ----------
     kwh_t : float or ndarray, any shape
-        Specific energy, kWh per metric tonne.
+        Specific energy, kWh/t; a metric tonne.
 
     Returns
     -------
@@ -98,7 +98,7 @@ def kwh_t_from_j_kg(energy_j_kg: Value) -> Value:
     Returns
     -------
     float or ndarray, same shape
-        Specific energy, kWh per metric tonne. NaN where the input is NaN.
+        Specific energy, kWh/t; a metric tonne. NaN where the input is NaN.
 
     Source
     ------

@@ -168,3 +168,51 @@ def test_a_constant_has_its_source_on_the_line_above(module):
     ]
 
     assert bare == []
+
+
+UNITS = {
+    "_kwh_t": "kWh/t", "_mg_l": "mg/L", "_kg_kah": "kg/kAh", "_m3_h": "m3/h",
+    "_a_m2": "A/m2", "_mol_m3": "mol/m3", "_kg_m3": "kg/m3", "_m2_s": "m2/s", "_m3_s": "m3/s",
+    "_pa_s": "Pa s", "_s_m": "S/m", "_j_mol": "J/mol", "_j_kg": "J/kg", "_kg_c": "kg/C",
+    "_ohm_m2": "ohm m2", "_ohm_m": "ohm m", "_v_k": "V/K", "_g_l": "g/L", "_mol_kg": "mol/kg",
+    "_m_s": "m/s", "_rad_s": "rad/s", "_kg_mol": "kg/mol", "_kg_s": "kg/s",
+    "_volts": "V", "_amps": "A", "_ohm": "ohm", "_kg": "kg", "_m2": "m2", "_m3": "m3", "_bar": "bar",
+    "_v": "V", "_k": "K", "_s": "s", "_m": "m", "_c": "C", "_j": "J", "_w": "W", "_t": "T",
+}  # fmt: skip
+"""Ends of names that are units, the longer ones first, and how a docstring writes them."""
+
+
+def unit_in(name: str) -> str | None:
+    """The unit in which a name ends; the whole name may be one, but not a single letter."""
+    ends = f"_{name.partition('_from_')[0]}"
+    return next((u for end, u in UNITS.items() if ends.endswith(end) and len(name) > 1), None)
+
+
+def described(section: str) -> dict[str, str]:
+    """What a Parameters section says of each name."""
+    parts = re.split(r"^(\*{0,2}\w+(?:, \*{0,2}\w+)*) : ", section, flags=re.MULTILINE)
+    return {
+        name: text
+        for names, text in zip(parts[1::2], parts[2::2], strict=True)
+        for name in names.split(", ")
+    }
+
+
+def says(text: str, unit: str) -> bool:
+    """Whether a text names a unit as a word of its own."""
+    return re.search(rf"(?<![\w/]){re.escape(unit)}(?![\w/])", " ".join(text.split())) is not None
+
+
+@pytest.mark.parametrize("function", FUNCTIONS)
+def test_a_unit_that_stands_in_a_name_stands_in_its_description(function):
+    sections = sections_of(function)
+    told = described(sections.get("Parameters", ""))
+
+    silent = [
+        name for name, text in told.items() if (unit := unit_in(name)) and not says(text, unit)
+    ]
+    unit = unit_in(function.__name__)
+    if unit and not says(sections["Returns"], unit):
+        silent.append("Returns")
+
+    assert silent == []

@@ -188,7 +188,7 @@ def cathode_current_a_m2(
     Parameters
     ----------
     overpotential_v : array_like, shape S
-        Volts by which the cathode lies below its equilibrium with the bulk; not negative.
+        How far the cathode lies below its equilibrium with the bulk, V; not negative.
     exchange_a_m2 : array_like, broadcast with S
         Exchange current density i0, A/m2; above zero.
     anodic_transfer : array_like, broadcast with S
@@ -264,7 +264,7 @@ def cathode_overpotential_v(
     Returns
     -------
     ndarray, broadcast shape
-        Volts below equilibrium with the bulk, zero or more. NaN where an input is NaN.
+        How far below equilibrium with the bulk, V; zero or more. NaN where an input is NaN.
 
     Raises
     ------

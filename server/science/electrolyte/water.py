@@ -24,7 +24,7 @@ def liquid_k(temperature_k: ArrayLike) -> Numbers:
     Returns
     -------
     ndarray, same shape
-        The same temperatures; NaN where the input is NaN.
+        The same temperatures, K; NaN where the input is NaN.
 
     Raises
     ------

@@ -122,7 +122,8 @@ def sulfate_coefficient(symbol: str, mol_kg: ArrayLike) -> Numbers:
     symbol : str
         Chemical symbol of the metal: Cu, Zn, Ni, Mn or Cd.
     mol_kg : array_like, any shape
-        Molality of the sulfate; not negative; fitted up to `highest_mol_kg` of its coefficients.
+        Molality of the sulfate, mol/kg of water; not negative; fitted up to `highest_mol_kg` of
+        its coefficients.
 
     Returns
     -------
@@ -172,7 +173,7 @@ def acid_coefficient(mol_kg: ArrayLike) -> Numbers:
     Parameters
     ----------
     mol_kg : array_like, any shape
-        Molality of the acid; above zero.
+        Molality of the acid, mol/kg of water; above zero.
 
     Returns
     -------

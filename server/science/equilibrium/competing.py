@@ -39,7 +39,7 @@ def starts_v(equilibrium_v: ArrayLike, side: Side, overpotential_v: ArrayLike = 
     side : {"cathode", "anode"}
         Whether the reaction takes electrons from the electrode or gives them to it.
     overpotential_v : array_like, broadcast with S
-        Overpotential that the reaction needs there for the rate of interest, as a size; not
+        Overpotential that the reaction needs there for the rate of interest, as a size, V; not
         negative. From Tafel's law or a measurement.
 
     Returns
@@ -88,7 +88,7 @@ def driving_v(
     side : {"cathode", "anode"}
         Whether the reaction takes electrons from the electrode or gives them to it.
     overpotential_v : array_like, broadcast with S
-        Overpotential for a rate that matters, as a size; not negative.
+        Overpotential for a rate that matters, as a size, V; not negative.
 
     Returns
     -------
@@ -136,7 +136,7 @@ def in_order(
     side : {"cathode", "anode"}
         The electrode.
     overpotentials_v : mapping of str to float, optional
-        Overpotential of each reaction at one common current density, as a size; nothing for
+        Overpotential of each reaction at one common current density, as a size, V; nothing for
         those that are not named.
 
     Returns
@@ -197,7 +197,7 @@ def first_to_go(
     side : {"cathode", "anode"}
         The electrode.
     overpotentials_v : mapping of str to array_like, optional
-        Overpotential of each reaction, as a size; nothing for those that are not named.
+        Overpotential of each reaction, as a size, V; nothing for those that are not named.
 
     Returns
     -------

@@ -61,7 +61,7 @@ def gibbs_j_mol(volts: ArrayLike, electrons: int) -> Numbers:
     Returns
     -------
     ndarray, same shape
-        Gibbs energy, J per mole of the reaction as written. NaN where the voltage is NaN.
+        Gibbs energy, J/mol of the reaction as written. NaN where the voltage is NaN.
 
     Raises
     ------
@@ -90,7 +90,7 @@ def volts_from_gibbs(gibbs_j_mol: ArrayLike, electrons: int) -> Numbers:
     Parameters
     ----------
     gibbs_j_mol : array_like, any shape
-        Gibbs energy, J per mole of the reaction as written.
+        Gibbs energy, J/mol of the reaction as written.
     electrons : int
         Electrons exchanged in the reaction as written; at least 1.
 
@@ -211,7 +211,7 @@ def winning_gibbs_j_mol(metal: Metal) -> float:
     Returns
     -------
     float
-        Gibbs energy, J per mole of metal; positive.
+        Gibbs energy, J/mol of metal; positive.
 
     Raises
     ------
@@ -246,7 +246,7 @@ def winning_enthalpy_j_mol(metal: Metal) -> float:
     Returns
     -------
     float
-        Enthalpy, J per mole of metal; positive.
+        Enthalpy, J/mol of metal; positive.
 
     Raises
     ------

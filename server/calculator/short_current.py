@@ -1,5 +1,7 @@
 """Short current: how much a short takes, from how far its cell stands below a healthy one."""
 
+from dataclasses import replace
+
 from server.calculator.charge import PROPAGATION, efficiency_share, kg_per_kah
 from server.calculator.inputs import Input
 from server.calculator.quantities import (
@@ -38,6 +40,9 @@ DEVIATION_MV = Input(
     20_000,
     hint=N_("a drop is negative"),
 )
+
+HEALTHY = replace(VOLTS, label=N_("Voltage of the healthy cell"))
+"""The drop is counted from here: with the shorted cell's own reading it would count twice."""
 
 
 def _amps(values: Numbers) -> float:
@@ -187,7 +192,7 @@ SHORT_CURRENT = Sum(
     title=N_("Short current from a voltage drop"),
     question=N_("How much current a short takes, and what that costs a day."),
     formula="I_s = −ΔV / R_d",
-    inputs=(DEVIATION_MV, RESISTANCE_UOHM, CURRENT_KA, VOLTS, EFFICIENCY_PCT, METAL_VALUE),
+    inputs=(DEVIATION_MV, RESISTANCE_UOHM, CURRENT_KA, HEALTHY, EFFICIENCY_PCT, METAL_VALUE),
     outputs=_outputs,
     needs=frozenset({"deviation", "efficiency", "volts"}),
     results=(

@@ -207,6 +207,8 @@ def test_a_short_warns_whoever_goes_there(client, session):
     said = main_of(client.get("/calculator/short-current"))
 
     assert "cell 4 against the median" in said
+    assert "Voltage of the healthy cell" in said
+    assert "Cell voltage" not in said
     assert "the site's procedure governs" in said
 
 

@@ -176,8 +176,9 @@ UNITS = {
     "_pa_s": "Pa s", "_s_m": "S/m", "_j_mol": "J/mol", "_j_kg": "J/kg", "_kg_c": "kg/C",
     "_ohm_m2": "ohm m2", "_ohm_m": "ohm m", "_v_k": "V/K", "_g_l": "g/L", "_mol_kg": "mol/kg",
     "_m_s": "m/s", "_rad_s": "rad/s", "_kg_mol": "kg/mol", "_kg_s": "kg/s",
-    "_volts": "V", "_amps": "A", "_ohm": "ohm", "_kg": "kg", "_m2": "m2", "_m3": "m3", "_bar": "bar",
-    "_v": "V", "_k": "K", "_s": "s", "_m": "m", "_c": "C", "_j": "J", "_w": "W", "_t": "T",
+    "_volts": "V", "_amps": "A", "_ohm": "ohm", "_kg": "kg", "_m2": "m2", "_m3": "m3",
+    "_bar": "bar", "_v": "V", "_k": "K", "_s": "s", "_m": "m", "_c": "C", "_j": "J", "_w": "W",
+    "_t": "T",
 }  # fmt: skip
 """Ends of names that are units, the longer ones first, and how a docstring writes them."""
 

@@ -2,12 +2,18 @@
 
 from typing import Any
 
-from server.science.units import ka_from_amps, millivolts_from_volts
+from server.science.units import ka_from_amps, kwh_from_joules, millivolts_from_volts
 from server.watch.flags import FlagResult
 from server.watch.life import FlagLife
+from server.watch.planned import PlannedStop
 from server.watch.worklist import WorkItem
 from server.web.api.account_answers import known
-from server.web.api.schemas_flags import FlagAnswer, NewestAnswer, WorkItemAnswer
+from server.web.api.schemas_flags import (
+    FlagAnswer,
+    NewestAnswer,
+    PlannedStopAnswer,
+    WorkItemAnswer,
+)
 
 
 def flag_answer(flag: FlagResult, life: FlagLife) -> FlagAnswer:
@@ -31,6 +37,20 @@ def work_item_answer(item: WorkItem) -> WorkItemAnswer:
             lost_kg_per_day=newest.lost_kg_per_day,
             lost_value_per_day=newest.lost_value_per_day,
         ),
+    )
+
+
+def planned_answer(stop: PlannedStop) -> PlannedStopAnswer:
+    """A cell that deserves a planned stop as the API answers it."""
+    return PlannedStopAnswer(
+        section=stop.section,
+        cell=stop.cell,
+        flags=stop.flags,
+        since=stop.since_ms,
+        last_raised_at=stop.last_ms,
+        deviation_mv=known(stop.deviation_v, millivolts_from_volts),
+        gain_kwh_per_month=known(stop.gain_j_per_month, kwh_from_joules),
+        gain_kg_per_month=stop.gain_kg_per_month,
     )
 
 

@@ -129,10 +129,45 @@ class WorkItemAnswer(FlagAnswer):
     """By this the list is ranked."""
 
 
+class PlannedStopAnswer(Answer):
+    """A cell whose anodes or contacts deserve a planned stop."""
+
+    model_config = ConfigDict(
+        json_schema_extra={
+            "example": {
+                "section": "A",
+                "cell": 12,
+                "flags": 3,
+                "since": "2026-02-14T02:10:00Z",
+                "last_raised_at": "2026-02-14T02:10:00Z",
+                "deviation_mv": 85.0,
+                "gain_kwh_per_month": 2200.0,
+                "gain_kg_per_month": None,
+            }
+        }
+    )
+
+    section: str
+    cell: int
+    flags: int
+    """Drifts high that were raised in the last 90 days."""
+    since: Moment | None
+    """Since when one is open; null where none is."""
+    last_raised_at: Moment
+    deviation_mv: float | None
+    """By how much it reads high now, or did when the last flag was raised."""
+    gain_kwh_per_month: float | None
+    """What the repair should bring in 30 days: that voltage times the cell's charge."""
+    gain_kg_per_month: float | None
+    """Metal, where the cell has a short as well."""
+
+
 class Worklist(Answer):
     """Open flags: those to act on first, the costliest first."""
 
     items: list[WorkItemAnswer]
+    planned: list[PlannedStopAnswer]
+    """Cells with a drift high for more than a week, or three in 90 days; most to gain first."""
 
 
 class FlagActSent(Answer):

@@ -14,6 +14,7 @@ from server.settings import Settings
 from server.storage.plant import House
 from server.watch.acts import ActRefused, Meant, Wanted, act_on, flag_meant
 from server.watch.life import DAY_MS, LONGEST_SHELF_MS
+from server.watch.planned import planned_stops
 from server.watch.record import coming_back
 from server.watch.worklist import worklist as open_flags
 from server.web.act_words import act_fault
@@ -48,7 +49,7 @@ from server.web.uploads import FormFields
 router = APIRouter(include_in_schema=False)
 
 _MOST_AGAIN = 15
-"""Cells that come back again and again, as far as they are listed."""
+"""Cells that come back again and again or deserve a planned stop, as far as they are listed."""
 
 _SHELF_DAYS = (1, 2, 3, 5, LONGEST_SHELF_MS // DAY_MS)
 
@@ -217,6 +218,7 @@ def _page(
         "on_one_sheet": ON_ONE_SHEET,
         "next_start": following if following < len(items) else None,
         "coming_back": coming_back(session, house, now_ms),
+        "planned": planned_stops(session, house, every, now_ms),
         "most_again": _MOST_AGAIN,
         "sections": words.section_choices([section.name for section in house.sections]),
         "kinds": words.kind_choices(),

@@ -15,7 +15,7 @@ from tests.factories import (
     make_section,
 )
 from tests.fixtures.browser import accessibility_faults
-from tests.web.pages.running import rows_of, words_of
+from tests.web.pages.running import rows_of, running_section, words_of
 
 RAISED_MS = NOW_MS - DAY_MS
 
@@ -305,3 +305,30 @@ def test_it_prints_on_one_sheet(page, live_server, sign_in, session):
     assert page.get_by_text("Before you go to a cell").is_visible()
     assert not page.locator("#flag-12").is_visible()
     assert pages == 1
+
+
+def test_cells_that_deserve_a_planned_stop_are_listed_with_what_it_should_bring(client, session):
+    section = running_section(session)
+    for days_ago in (80, 50, 20):
+        raised_ms = NOW_MS - days_ago * DAY_MS
+        make_flag(
+            *(session, section.id, section.cell_ids[4]),
+            raised_ms=raised_ms,
+            ended_ms=raised_ms + 3 * DAY_MS,
+            deviation_v=0.1,
+        )
+
+    page = client.get("/worklist")
+    (stop,) = client.get("/api/v1/worklist").json()["planned"]
+
+    (row,) = rows_of(page, "Cells whose anodes or contacts deserve a planned stop")
+    assert row == ["EW1, cell 5", "not now", "3", "+100", "244", ""]
+    assert stop["cell"] == 5
+    assert stop["gain_kwh_per_month"] == pytest.approx(244.35, abs=0.01)
+    assert stop["gain_kg_per_month"] is None
+
+
+def test_where_no_cell_deserves_a_stop_the_list_says_so(client, section):
+    said = words_of(client.get("/worklist"))
+
+    assert "No cell has drifted high for more than a week, or three times in 90 days." in said

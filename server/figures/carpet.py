@@ -83,6 +83,10 @@ def carpet_figure(
                 "zmax": FULL_SHADE,
                 "colorscale": _shades(),
                 "showscale": False,
+                # Without any gap Plotly draws with a style of its own in the page, which the
+                # page's rules forbid.
+                "xgap": 0.05,
+                "ygap": 0.05,
                 "hoverongaps": False,
                 "hovertemplate": f"{words.cell} %{{y}}, %{{x|%-d %b %H:%M}}"
                 f"<br>%{{customdata:.0f}} mV, %{{z:.1f}} {words.bands}<extra></extra>",

@@ -25,8 +25,8 @@ DAY_MS = 86_400_000
 NOW_MS = 1_772_521_920_000
 """2026-03-03 04:12 -03:00"""
 ROUTES = (
-    "today", "sections", "lots", "log_shift", "readings_in", "calculator", "setup", "people",
-    "own_page", "sign_in",
+    "today", "sections", "worklist", "worklist_record", "lots", "log_shift", "readings_in",
+    "calculator", "setup", "people", "own_page", "sign_in",
 )  # fmt: skip
 
 

@@ -58,6 +58,7 @@ def shown_of(query: str) -> Shown:
     """What an address showed, from a form that was sent from there; whatever is wrong is left."""
     sent = {name: values[-1] for name, values in parse_qs(query[:2000]).items()}
     names = {field.name for field in fields(Shown)} - {"start"}
+    # A word that is none of those known shows an empty list; it is not worth refusing a form for.
     return Shown(**{name: value for name, value in sent.items() if name in names})  # type: ignore[arg-type]
 
 

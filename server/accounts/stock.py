@@ -83,6 +83,8 @@ class StockBook:
         lately = set(crops["cell_id"][crops["pulled_ms"] < from_ms].tolist())
         others = [cell_id for cell_id in section.cell_ids if cell_id not in lately]
         former = last_crop_of_each(session, others, from_ms - _RECENT_MS)
+        self._never_before = set(others) - set(former["cell_id"].tolist())
+        """Cells of which no crop was pulled before those at hand."""
         self._crops = np.concatenate((former, crops))
         self._place = np.searchsorted(section.cell_ids, self._crops["cell_id"])
         charge_c = self._crops["charge_c"]
@@ -191,11 +193,10 @@ class StockBook:
     ) -> _Parts:
         """Parts of a cell whose cathodes are not all pulled together, or not lately."""
         groups = {h.started_ms: h.cathodes for h in hanging(cathodes, self._crops[own])}
-        if FROM_THE_START_MS in groups:
+        cell_id = self._section.cell_ids[place]
+        if FROM_THE_START_MS in groups and cell_id not in self._never_before:
             # Some cathodes hang since before these crops: look further back for their pull.
-            former = last_crops_of_cell(
-                self._session, self._section.cell_ids[place], at_ms, LOOK_BACK
-            )
+            former = last_crops_of_cell(self._session, cell_id, at_ms, LOOK_BACK)
             groups = {h.started_ms: h.cathodes for h in hanging(cathodes, former)}
         found: list[tuple[int, float, float]] = []
         for number in later.tolist():
